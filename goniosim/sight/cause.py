@@ -1,0 +1,142 @@
+"""Why a point is not seen: the face and the event that stop the ray that would have come nearest.
+
+Where some rays of the fan do leave by a proper path, the one whose direction is nearest to the goal is
+walked toward it until its path breaks: the face at which it breaks is the cause. Where none leaves,
+the stopped ray that was heading nearest to the goal tells.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+
+from ..scene.compile import CompiledScene
+from ..scene.tracing import raw_trace
+from .fan import Fan, frame_about
+from .paths import full_path
+
+TOTAL_REFLECTION = "total reflection at {face}"
+BLOCKED = "blocked by {face}"
+OUTSIDE_OPENING = "outside the opening of {face}"
+TOO_DIM = "too dim: throughput {value:.3g} is below the floor of {floor:g}"
+OUTSIDE_FIELD = "outside the field"
+BEYOND_TILT = "beyond the scope's tilt: {tilt:g} deg asked for, {limit:g} deg possible"
+NO_SIGHT = "no ray sets out toward the scope"
+
+WALK_STEPS = 24
+EDGE_STEPS = 60
+
+
+def why_unseen(scene: CompiledScene, wavelength_nm: float, fan: Fan, direction: np.ndarray) -> str:
+    """Cause, in words, why no proper path leaves in a direction (3,)."""
+    if fan.groups:
+        broken = _walk(scene, wavelength_nm, fan, direction)
+        if broken is not None:
+            return broken
+    return _nearest_stopped(scene, wavelength_nm, fan, direction)
+
+
+def _walk(scene: CompiledScene, wavelength_nm: float, fan: Fan, direction: np.ndarray) -> str | None:
+    """Walk the nearest proper ray toward the goal and name what breaks its path."""
+    from ..kernels.aim import FOUND, aim
+
+    group = max(fan.groups, key=lambda g: float((fan.outward[fan.groups[g]] @ direction).max()))
+    first = np.ascontiguousarray(fan.nearest(group, direction)[0])
+    arrays = scene.arrays(wavelength_nm)
+    found, point, out = np.empty(3), np.empty(3), np.empty(3)
+    row = fan.groups[group][int(np.argmax(fan.outward[fan.groups[group]] @ direction))]
+    start_out = fan.outward[row]
+    for step in range(1, WALK_STEPS + 1):
+        goal = start_out + (direction - start_out) * step / WALK_STEPS
+        goal /= np.linalg.norm(goal)
+        status = aim(arrays, fan.body, fan.origin_mm, first, group, False, goal, 1e-9, found, point, out)
+        if status != FOUND:
+            return _break_beyond(scene, wavelength_nm, fan, group, found.copy(), direction)
+        first = found.copy()
+    return None
+
+
+def _break_beyond(scene, wavelength_nm, fan: Fan, group: int, first: np.ndarray, direction: np.ndarray) -> str | None:
+    """Step past the edge of a path, toward the goal, and compare the broken path with the whole one."""
+    whole = full_path(scene, wavelength_nm, fan.origin_mm, fan.body, first)
+    if whole.code != group:
+        return None
+    onward = _first_step(scene, wavelength_nm, fan, group, first, whole.outward, direction)
+    for power in np.linspace(-8.0, -0.5, EDGE_STEPS):
+        trial = first + 10.0**power * onward
+        trial /= np.linalg.norm(trial)
+        path = full_path(scene, wavelength_nm, fan.origin_mm, fan.body, trial)
+        if path.code != group:
+            return _compare(scene, whole.faces, path.faces)
+    return None
+
+
+def _first_step(scene, wavelength_nm, fan, group, first, outward, direction) -> np.ndarray:
+    """Unit change of the first direction that turns the last one toward the goal (least squares)."""
+    tangent = frame_about(first)[:2]
+    h = 1e-7
+    columns = []
+    for axis in tangent:
+        for sign in (1.0, -1.0):
+            trial = first + sign * h * axis
+            path = full_path(scene, wavelength_nm, fan.origin_mm, fan.body, trial / np.linalg.norm(trial))
+            if path.code == group:
+                columns.append((path.outward - outward) * sign / h)
+                break
+        else:
+            columns.append(np.zeros(3))
+    want = direction - (direction @ outward) * outward
+    share, *_ = np.linalg.lstsq(np.array(columns).T, want, rcond=None)
+    step = share @ tangent
+    size = np.linalg.norm(step)
+    return step / size if size > 0.0 else tangent[0]
+
+
+def _compare(scene: CompiledScene, whole, broken) -> str | None:
+    """Name the first difference between a whole path and the broken one."""
+    for step, (face, event) in enumerate(whole):
+        got = broken[step] if step < len(broken) else None
+        if got == (face, event):
+            continue
+        if got is None:
+            return BLOCKED.format(face=broken[-1][0]) if broken else None
+        if got[0] == face:
+            return TOTAL_REFLECTION.format(face=face) if got[1] == "reflected" else OUTSIDE_OPENING.format(face=face)
+        if absorbs(scene, got[0]):
+            return BLOCKED.format(face=got[0])
+        return OUTSIDE_OPENING.format(face=face)
+    return BLOCKED.format(face=broken[-1][0]) if len(broken) > len(whole) else None
+
+
+def absorbs(scene: CompiledScene, name: str) -> bool:
+    """Whether a face stops light whichever way it comes."""
+    face = scene.faces[scene.face_number[name]]
+    return face.finish in ("ground", "opaque") or face.beyond == "opaque"
+
+
+def _nearest_stopped(scene: CompiledScene, wavelength_nm: float, fan: Fan, direction: np.ndarray) -> str:
+    """Cause by the stopped ray that was heading nearest to the goal."""
+    origins = np.ascontiguousarray(np.broadcast_to(fan.origin_mm, fan.first.shape))
+    out = raw_trace(scene.arrays(wavelength_nm), origins, fan.first, np.full(len(fan.first), fan.body, np.int64), True)
+    best, words = -2.0, NO_SIGHT
+    for ray in range(len(fan.first)):
+        heading, cause = _stop_of(scene, out, fan.first[ray], ray)
+        if cause is not None and heading @ direction > best:
+            best, words = float(heading @ direction), cause
+    return words
+
+
+def _stop_of(scene: CompiledScene, out: dict, first: np.ndarray, ray: int):
+    """Where a ray was first stopped: the direction it would have gone on in, and the cause."""
+    before = first
+    for step in range(int(out["met"][ray])):
+        number = int(out["path_face"][ray, step])
+        face = scene.faces[number // 2]
+        onward = out["path_dir"][ray, step]
+        if number % 2 and face.finish != "mirror" and face.works_by is None:
+            # At the critical angle light would graze along the face: the way it would have left.
+            grazing = before + onward
+            return grazing / np.linalg.norm(grazing), TOTAL_REFLECTION.format(face=face.name)
+        before = onward
+    if out["status"][ray] == 1:
+        return before, BLOCKED.format(face=scene.faces[int(out["ended"][ray])].name)
+    return before, None
