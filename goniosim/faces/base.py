@@ -29,12 +29,12 @@ from ..declare import Key
 PLANE, CONIC, CYLINDER, CONE, PROFILE, RING_ARC, ROUND_CORNEA, TORIC = range(8)
 """Kinds of surface that the kernels know."""
 
-NO_PIECES = np.zeros((0, 8))
+NO_PIECES = np.zeros((0, 9))
 
 
 @dataclass(frozen=True)
 class Lowered:
-    """A shape as the kernels take it: kind, 16 parameters, cubic pieces (n, 8), radial extent in mm."""
+    """A shape as the kernels take it: kind, 16 parameters, cubic pieces (n, 9), radial extent in mm."""
 
     kind: int
     parameters: np.ndarray

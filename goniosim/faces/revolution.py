@@ -15,20 +15,33 @@ from ..declare import Key
 from .base import PROFILE, RING_ARC, Lowered, Shape, packed, unit
 
 
+CONVEX = -1.0  # see kernels/shapes.py
+
+
 def with_heights(pieces: np.ndarray) -> np.ndarray:
-    """Cubic pieces (n, 6) with the least and greatest z of each added, (n, 8)."""
+    """Cubic pieces (n, 6) with the least and greatest z of each, and a bound on bending, added, (n, 9).
+
+    The bound holds for |d^2/dt^2 (z - s(rho))| along any ray: |s''| + |s'| / r, for |rho'| <= 1, rho'' <= 1 / r.
+    """
     rows = []
     for r0, r1, a, b, c, d in pieces:
         # z' = b + 2 c u + 3 d u^2 vanishes where the height may be extreme inside the piece.
         turns = [u.real for u in np.roots([3 * d, 2 * c, b]) if abs(u.imag) < 1e-12] if (c or d) else []
         u = np.array([0.0, r1 - r0, *[t for t in turns if 0.0 < t < r1 - r0]])
         z = a + u * (b + u * (c + u * d))
-        rows.append([r0, r1, a, b, c, d, z.min() - 1e-9, z.max() + 1e-9])
+        long = r1 - r0
+        steep = abs(b) + long * (2.0 * abs(c) + 3.0 * abs(d) * long)
+        curved = max(abs(2.0 * c), abs(2.0 * c + 6.0 * d * long))
+        bend = curved + steep / r0 if r0 > 0.0 else np.inf
+        falls = max(b, b + long * (2.0 * c + 3.0 * d * long)) <= 0.0
+        if falls and max(c, c + 3.0 * d * long) <= 0.0:
+            bend = CONVEX  # s falls and steepens, as a dome does
+        rows.append([r0, r1, a, b, c, d, z.min() - 1e-9, z.max() + 1e-9, bend])
     return np.array(rows)
 
 
 def cubic_height(pieces: np.ndarray, r: np.ndarray) -> tuple[np.ndarray, np.ndarray]:
-    """z(r) and dz/dr of pieces (n, 6 or 8); beyond the ends the end pieces run on."""
+    """z(r) and dz/dr of pieces (n, 6 or more); beyond the ends the end pieces run on."""
     index = np.clip(np.searchsorted(pieces[:, 0], r, side="right") - 1, 0, len(pieces) - 1)
     u = r - pieces[index, 0]
     a, b, c, d = pieces[index, 2:6].T

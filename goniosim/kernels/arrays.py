@@ -23,42 +23,39 @@ AIR_BODY = -1
 OPAQUE_BODY = -2
 MAX_FACES = 64
 
+# Columns of the face table.
+KIND, FINISH, REFLECTANCE, INTENDED, TURNED, PIECE_FROM, PIECE_TO = range(7)
+ORG, ROT, PAR, EXT = 7, 10, 19, 35  # three, nine, sixteen and four columns from here
+FACE_COLUMNS = 39
+
+# Columns of the side table: one row for each face of each body.
+FACE, SIGN, BEYOND, NEAR_FROM, NEAR_TO, BODY = range(6)
+
+# Columns of the body table, and of the optics of bodies.
+SIDE_FROM, SIDE_TO, CHECK_FROM, CHECK_TO, IS_OPAQUE = range(5)
+INDEX, ABSORPTION = range(2)
+
 
 class SceneArrays(NamedTuple):
-    """A scene at one wavelength. F faces, P cubic pieces, B bodies, S body sides.
+    """A scene at one wavelength, in few arrays, because every array that a kernel hands on costs time.
 
-    kind (F,) int64; par (F, 16); ext (F, 4) r_min, r_max, z_min, z_max; rot (F, 3, 3) shape to eye;
-    org (F, 3); turned (F,) whether rot is not the identity; piece_from (F + 1,); pieces (P, 8);
-    finish (F,); reflectance (F,); intended (F,) 1 where total reflection is meant;
-    side_from (B + 1,) rows of a body in side_face, side_sign (+1: the body lies ahead of the face);
-    beyond (S,) AIR_BODY or OPAQUE_BODY where no neighbour takes the ray; near_from (S + 1,), near_body;
-    check_from (B + 1,), check_face, check_sign: sides that an entry from outside must respect;
-    air_side: rows of S through which air leads into a body; body_of (S,);
-    index (B,), absorption (B,) per mm, opaque (B,) 1 where the body swallows light.
+    faces (F, 39) float64: kind, finish, reflectance, 1 where total reflection is meant, 1 where turned, rows of
+        its cubic pieces from and to, origin (3), rotation shape to eye (9), parameters (16), extent r_min,
+        r_max, z_min, z_max (4).
+    pieces (P, 9) float64: r0, r1, a, b, c, d, least and greatest z, bound on bending of each cubic piece.
+    sides (S, 6) int64: face; +1 where the body lies ahead of it, -1 behind; what lies beyond (AIR_BODY or
+        OPAQUE_BODY) where no neighbour takes the ray; neighbours from, to (rows of near); the body.
+    bodies (B, 5) int64: sides from, to; entry checks from, to; 1 where it swallows light.
+    checks (K, 2) int64: face and sign of the sides that an entry from outside must respect.
+    near (N,) int64: neighbouring bodies. air (A,) int64: sides through which air leads into a body.
+    optics (B, 2) float64: refractive index, absorption per mm.
     """
 
-    kind: np.ndarray
-    par: np.ndarray
-    ext: np.ndarray
-    rot: np.ndarray
-    org: np.ndarray
-    turned: np.ndarray
-    piece_from: np.ndarray
+    faces: np.ndarray
     pieces: np.ndarray
-    finish: np.ndarray
-    reflectance: np.ndarray
-    intended: np.ndarray
-    side_from: np.ndarray
-    side_face: np.ndarray
-    side_sign: np.ndarray
-    beyond: np.ndarray
-    near_from: np.ndarray
-    near_body: np.ndarray
-    check_from: np.ndarray
-    check_face: np.ndarray
-    check_sign: np.ndarray
-    air_side: np.ndarray
-    body_of: np.ndarray
-    index: np.ndarray
-    absorption: np.ndarray
-    opaque: np.ndarray
+    sides: np.ndarray
+    bodies: np.ndarray
+    checks: np.ndarray
+    near: np.ndarray
+    air: np.ndarray
+    optics: np.ndarray

@@ -12,111 +12,123 @@ import math
 import numpy as np
 
 from . import kernel
-from .arrays import (ABSORBED, AIR_BODY, COATED, GROUND, LEFT, LOST, MAX_FACES, MIRROR, MISSED, OPAQUE, OPAQUE_BODY,
-                     TOO_MANY_FACES)
-from .shapes import crossing, normal_at, side_of
+from .arrays import (ABSORBED, ABSORPTION, AIR_BODY, BEYOND, BODY, CHECK_FROM, CHECK_TO, COATED, EXT, FACE, FINISH, GROUND, INDEX,
+                     INTENDED, IS_OPAQUE, KIND, LEFT, LOST, MAX_FACES, MIRROR, MISSED, NEAR_FROM, NEAR_TO, OPAQUE,
+                     OPAQUE_BODY, ORG, REFLECTANCE, ROT, SIDE_FROM, SIDE_TO, SIGN, TOO_MANY_FACES, TURNED)
+from .shapes import PLANE, T_MIN, crossing, normal_at, side_of
 
 TOUCH = 1e-9  # mm; a point this near to a bounding face still counts as inside
 
 
 @kernel
-def face_crossing(s, f, p0, p1, p2, d0, d1, d2, want):
-    """Distance along a ray to the wanted crossing with face f."""
-    x, y, z = p0 - s.org[f, 0], p1 - s.org[f, 1], p2 - s.org[f, 2]
-    u, v, w = d0, d1, d2
-    if s.turned[f]:
-        r = s.rot[f]
-        x, y, z = (r[0, 0] * x + r[1, 0] * y + r[2, 0] * z, r[0, 1] * x + r[1, 1] * y + r[2, 1] * z,
-                   r[0, 2] * x + r[1, 2] * y + r[2, 2] * z)
-        u, v, w = (r[0, 0] * u + r[1, 0] * v + r[2, 0] * w, r[0, 1] * u + r[1, 1] * v + r[2, 1] * w,
-                   r[0, 2] * u + r[1, 2] * v + r[2, 2] * w)
-    return crossing(s.kind[f], s.par[f], s.pieces, s.piece_from[f], s.piece_from[f + 1], s.ext[f],
-                    x, y, z, u, v, w, want)
+def into_face(q, f, x, y, z):
+    """A vector of the eye frame in the axes of a turned face."""
+    return (q[f, ROT] * x + q[f, ROT + 3] * y + q[f, ROT + 6] * z,
+            q[f, ROT + 1] * x + q[f, ROT + 4] * y + q[f, ROT + 7] * z,
+            q[f, ROT + 2] * x + q[f, ROT + 5] * y + q[f, ROT + 8] * z)
 
 
 @kernel
-def local_point(s, f, p0, p1, p2):
+def face_crossing(q, f, pieces, p0, p1, p2, d0, d1, d2, want, limit):
+    """Distance along a ray of the eye frame to the wanted crossing with face f."""
+    if q[f, KIND] == PLANE and q[f, EXT + 1] == math.inf:
+        # A plane needs no change of frame: its normal is the third column of the rotation.
+        n0, n1, n2 = q[f, ROT + 2], q[f, ROT + 5], q[f, ROT + 8]
+        along = n0 * d0 + n1 * d1 + n2 * d2
+        if along * want <= 0.0:
+            return math.inf
+        t = (n0 * (q[f, ORG] - p0) + n1 * (q[f, ORG + 1] - p1) + n2 * (q[f, ORG + 2] - p2)) / along
+        return t if t >= T_MIN else math.inf
+    x, y, z = p0 - q[f, ORG], p1 - q[f, ORG + 1], p2 - q[f, ORG + 2]
+    if q[f, TURNED] != 0.0:
+        x, y, z = into_face(q, f, x, y, z)
+        d0, d1, d2 = into_face(q, f, d0, d1, d2)
+    return crossing(q, f, pieces, x, y, z, d0, d1, d2, want, limit)
+
+
+@kernel
+def local_point(q, f, p0, p1, p2):
     """A point of the eye frame in the frame of face f."""
-    x, y, z = p0 - s.org[f, 0], p1 - s.org[f, 1], p2 - s.org[f, 2]
-    if s.turned[f]:
-        r = s.rot[f]
-        return (r[0, 0] * x + r[1, 0] * y + r[2, 0] * z, r[0, 1] * x + r[1, 1] * y + r[2, 1] * z,
-                r[0, 2] * x + r[1, 2] * y + r[2, 2] * z)
+    x, y, z = p0 - q[f, ORG], p1 - q[f, ORG + 1], p2 - q[f, ORG + 2]
+    if q[f, TURNED] != 0.0:
+        return into_face(q, f, x, y, z)
     return x, y, z
 
 
 @kernel
-def face_normal(s, f, p0, p1, p2):
+def face_normal(q, f, pieces, p0, p1, p2):
     """Forward unit normal of face f at a point on it, in the eye frame."""
-    x, y, z = local_point(s, f, p0, p1, p2)
-    n0, n1, n2 = normal_at(s.kind[f], s.par[f], s.pieces, s.piece_from[f], s.piece_from[f + 1], x, y, z)
-    if s.turned[f]:
-        r = s.rot[f]
-        return (r[0, 0] * n0 + r[0, 1] * n1 + r[0, 2] * n2, r[1, 0] * n0 + r[1, 1] * n1 + r[1, 2] * n2,
-                r[2, 0] * n0 + r[2, 1] * n1 + r[2, 2] * n2)
+    x, y, z = local_point(q, f, p0, p1, p2)
+    n0, n1, n2 = normal_at(q, f, pieces, x, y, z)
+    if q[f, TURNED] != 0.0:
+        return (q[f, ROT] * n0 + q[f, ROT + 1] * n1 + q[f, ROT + 2] * n2,
+                q[f, ROT + 3] * n0 + q[f, ROT + 4] * n1 + q[f, ROT + 5] * n2,
+                q[f, ROT + 6] * n0 + q[f, ROT + 7] * n1 + q[f, ROT + 8] * n2)
     return n0, n1, n2
 
 
 @kernel
-def holds(s, body, but_face, p0, p1, p2):
+def holds(q, pieces, bodies, checks, body, but_face, p0, p1, p2):
     """Whether a point on but_face lies on the right side of the body's other faces."""
-    for i in range(s.check_from[body], s.check_from[body + 1]):
-        f = s.check_face[i]
+    for i in range(bodies[body, CHECK_FROM], bodies[body, CHECK_TO]):
+        f = checks[i, 0]
         if f == but_face:
             continue
-        x, y, z = local_point(s, f, p0, p1, p2)
-        side = side_of(s.kind[f], s.par[f], s.pieces, s.piece_from[f], s.piece_from[f + 1], s.ext[f], x, y, z)
-        if side * s.check_sign[i] < -TOUCH:
+        x, y, z = local_point(q, f, p0, p1, p2)
+        if side_of(q, f, pieces, x, y, z) * checks[i, 1] < -TOUCH:
             return False
     return True
 
 
 @kernel
-def way_out(s, body, p0, p1, p2, d0, d1, d2):
+def way_out(q, pieces, sides, bodies, body, p0, p1, p2, d0, d1, d2):
     """Row of the side through which a ray leaves its body, and the distance; row -1: none."""
     best, row = math.inf, -1
-    for i in range(s.side_from[body], s.side_from[body + 1]):
-        t = face_crossing(s, s.side_face[i], p0, p1, p2, d0, d1, d2, -s.side_sign[i])
+    for i in range(bodies[body, SIDE_FROM], bodies[body, SIDE_TO]):
+        t = face_crossing(q, sides[i, FACE], pieces, p0, p1, p2, d0, d1, d2, -float(sides[i, SIGN]), best)
         if t < best:
             best, row = t, i
     return row, best
 
 
 @kernel
-def way_in(s, p0, p1, p2, d0, d1, d2):
+def way_in(q, pieces, sides, bodies, checks, air, p0, p1, p2, d0, d1, d2):
     """Row of the side through which a ray in air enters a body, and the distance; row -1: none."""
     best, row = math.inf, -1
-    for j in range(len(s.air_side)):
-        i = s.air_side[j]
-        f = s.side_face[i]
-        t = face_crossing(s, f, p0, p1, p2, d0, d1, d2, s.side_sign[i])
-        if t < best and holds(s, s.body_of[i], f, p0 + t * d0, p1 + t * d1, p2 + t * d2):
+    t, before, sense = math.inf, -1, 0
+    for j in range(len(air)):
+        i = air[j]
+        f = sides[i, FACE]
+        if f != before or sides[i, SIGN] != sense:  # bodies that share a face stand next to each other
+            t = face_crossing(q, f, pieces, p0, p1, p2, d0, d1, d2, float(sides[i, SIGN]), best)
+            before, sense = f, sides[i, SIGN]
+        if t < best and holds(q, pieces, bodies, checks, sides[i, BODY], f, p0 + t * d0, p1 + t * d1, p2 + t * d2):
             best, row = t, i
     return row, best
 
 
 @kernel
-def neighbour(s, row, p0, p1, p2):
+def neighbour(q, pieces, sides, bodies, checks, near, row, p0, p1, p2):
     """The body that takes a ray which leaves through a side at a point."""
-    for j in range(s.near_from[row], s.near_from[row + 1]):
-        body = s.near_body[j]
-        if holds(s, body, s.side_face[row], p0, p1, p2):
-            return body
-    return s.beyond[row]
+    for j in range(sides[row, NEAR_FROM], sides[row, NEAR_TO]):
+        if holds(q, pieces, bodies, checks, near[j], sides[row, FACE], p0, p1, p2):
+            return near[j]
+    return sides[row, BEYOND]
 
 
 @kernel
 def locate(s, p0, p1, p2, d0, d1, d2):
     """The body in which a ray starts: the one that its first crossing leaves, else the air."""
-    best, body = math.inf, AIR_BODY
-    for b in range(len(s.side_from) - 1):
-        for i in range(s.side_from[b], s.side_from[b + 1]):
-            f = s.side_face[i]
-            t = face_crossing(s, f, p0, p1, p2, d0, d1, d2, -s.side_sign[i])
-            if t < best and holds(s, b, f, p0 + t * d0, p1 + t * d1, p2 + t * d2):
-                best, body = t, b
-    row, entry = way_in(s, p0, p1, p2, d0, d1, d2)
-    return AIR_BODY if row >= 0 and entry < best - TOUCH else body
+    q, pieces, sides, bodies, checks, _, air, _ = s
+    best, body = math.inf, np.int64(AIR_BODY)
+    for b in range(len(bodies)):
+        for i in range(bodies[b, SIDE_FROM], bodies[b, SIDE_TO]):
+            f = sides[i, FACE]
+            t = face_crossing(q, f, pieces, p0, p1, p2, d0, d1, d2, -float(sides[i, SIGN]), best)
+            if t < best and holds(q, pieces, bodies, checks, b, f, p0 + t * d0, p1 + t * d1, p2 + t * d2):
+                best, body = t, np.int64(b)
+    row, entry = way_in(q, pieces, sides, bodies, checks, air, p0, p1, p2, d0, d1, d2)
+    return np.int64(AIR_BODY) if row >= 0 and entry < best - TOUCH else body
 
 
 @kernel
@@ -136,28 +148,29 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
     path_face holds 2 f for a passage of face f and 2 f + 1 for a reflection, where keep is set;
     path_dir the direction with which the ray goes on.
     """
+    q, pieces, sides, bodies, checks, near, air, optics = s
     power, headroom, headroom_face = 1.0, math.inf, -1
     code, last, stray = np.int64(1469598103934665603), -1, 0
     for met in range(MAX_FACES):
         if body == AIR_BODY:
-            row, t = way_in(s, p0, p1, p2, d0, d1, d2)
+            row, t = way_in(q, pieces, sides, bodies, checks, air, p0, p1, p2, d0, d1, d2)
             if row < 0:
                 status = LEFT if met > 0 else MISSED
                 return status, last, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, met, stray
             n1 = 1.0
         else:
-            row, t = way_out(s, body, p0, p1, p2, d0, d1, d2)
+            row, t = way_out(q, pieces, sides, bodies, body, p0, p1, p2, d0, d1, d2)
             if row < 0:
                 return LOST, last, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, met, stray
-            n1 = s.index[body]
-            if s.absorption[body] > 0.0:
-                power *= math.exp(-s.absorption[body] * max(t, 0.0))
-        f = s.side_face[row]
+            n1 = optics[body, INDEX]
+            if optics[body, ABSORPTION] > 0.0:
+                power *= math.exp(-optics[body, ABSORPTION] * max(t, 0.0))
+        f = sides[row, FACE]
         p0, p1, p2 = p0 + t * d0, p1 + t * d1, p2 + t * d2
         last = f
-        after = s.body_of[row] if body == AIR_BODY else neighbour(s, row, p0, p1, p2)
-        finish = s.finish[f]
-        stops = finish == GROUND or finish == OPAQUE or after == OPAQUE_BODY or (after >= 0 and s.opaque[after] == 1)
+        after = sides[row, BODY] if body == AIR_BODY else neighbour(q, pieces, sides, bodies, checks, near, row, p0, p1, p2)
+        finish = int(q[f, FINISH])
+        stops = finish == GROUND or finish == OPAQUE or after == OPAQUE_BODY or (after >= 0 and bodies[after, IS_OPAQUE] == 1)
         if stops and finish != MIRROR:
             code = (code ^ (2 * f)) * np.int64(1099511628211)
             if keep:
@@ -165,22 +178,22 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
                 path_point[met, 0], path_point[met, 1], path_point[met, 2] = p0, p1, p2
                 path_dir[met, 0], path_dir[met, 1], path_dir[met, 2] = d0, d1, d2
             return ABSORBED, f, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, met + 1, stray
-        g0, g1, g2 = face_normal(s, f, p0, p1, p2)
+        g0, g1, g2 = face_normal(q, f, pieces, p0, p1, p2)
         cos1 = g0 * d0 + g1 * d1 + g2 * d2
         if cos1 < 0.0:
             g0, g1, g2, cos1 = -g0, -g1, -g2, -cos1
         reflect = finish == MIRROR
         if reflect:
-            power *= s.reflectance[f]
+            power *= q[f, REFLECTANCE]
         else:
-            n2 = 1.0 if after == AIR_BODY else s.index[after]
+            n2 = 1.0 if after == AIR_BODY else optics[after, INDEX]
             ratio = n1 / n2
             # cos2^2 from sin^2 by differences that keep their digits near grazing incidence.
             sin1 = math.sqrt(max(1.0 - cos1 * cos1, 0.0))
             cos2_squared = (1.0 - ratio * sin1) * (1.0 + ratio * sin1)
             if cos2_squared <= 0.0:
                 reflect = True
-                stray += 1 - s.intended[f]
+                stray += 1 - int(q[f, INTENDED])
             else:
                 if n1 > n2:
                     room = math.asin(n2 / n1) - math.asin(min(sin1, 1.0))
@@ -188,7 +201,7 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
                         headroom, headroom_face = room, f
                 cos2 = math.sqrt(cos2_squared)
                 if finish == COATED:
-                    power *= 1.0 - s.reflectance[f]
+                    power *= 1.0 - q[f, REFLECTANCE]
                 else:
                     power *= unpolarised_transmittance(n1, n2, cos1, cos2)
                 along = cos2 - ratio * cos1

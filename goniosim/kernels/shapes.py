@@ -2,8 +2,9 @@
 
 Frame: the surface's own, +z forward. A crossing is wanted in one sense only: `want` = +1 from behind
 to ahead (along the forward normal), -1 the other way. That sense decides which root is meant, so that
-a ray that starts on a surface needs no offset to leave it. Returns the distance t (infinite: none)
-and, from `meet`, the forward unit normal.
+a ray that starts on a surface needs no offset to leave it. Returns the distance t, infinite where there is none.
+
+`q` is the face table, `f` the face; a cubic piece is handed on as its numbers r0, a, b, c, d.
 """
 
 from __future__ import annotations
@@ -11,9 +12,12 @@ from __future__ import annotations
 import math
 
 from . import kernel
+from .arrays import EXT, KIND, PAR, PIECE_FROM, PIECE_TO
 
 T_MIN = -1e-9  # mm; a start that rounding put just outside still counts
-SAMPLES = 8  # first subdivision of an interval that may hold several crossings
+SAMPLES = 8
+CONVEX = -1.0  # bound on bending that marks a piece along which z - s(rho) is convex for every ray
+FAR_MM = 60.0  # a toric face is searched for this far about its vertex
 PLANE, CONIC, CYLINDER, CONE, PROFILE, RING_ARC, ROUND_CORNEA, TORIC = range(8)
 
 
@@ -77,117 +81,161 @@ def slab_interval(p, d, low, high):
 
 
 @kernel
-def sag_value(kind, par, row, px, py, pz, dx, dy, dz, t):
-    """f and df/dt along a ray; f > 0 ahead. row: cubic piece, used by PROFILE and ROUND_CORNEA."""
+def sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, t):
+    """g and dg/dt along a ray; g > 0 ahead. r0 to d: the cubic piece, for surfaces made of pieces."""
     x, y, z = px + t * dx, py + t * dy, pz + t * dz
     if kind == TORIC:
-        height, zx, zy = toric_height(par, x, y)
+        height, zx, zy = toric_height(q, f, x, y)
         return z - height, dz - zx * dx - zy * dy
     rho = math.sqrt(x * x + y * y)
     run = (x * dx + y * dy) / rho if rho > 0.0 else 0.0
     if kind == RING_ARC:
-        across = rho - par[0]
+        across = rho - q[f, PAR]
         distance = math.sqrt(across * across + z * z)
         if distance == 0.0:
-            return -par[1], 0.0
-        return distance - par[1], (across * run + z * dz) / distance
-    u = rho - row[0]
-    height = row[2] + u * (row[3] + u * (row[4] + u * row[5]))
-    slope = row[3] + u * (2.0 * row[4] + 3.0 * u * row[5])
+            return -q[f, PAR + 1], 0.0
+        return distance - q[f, PAR + 1], (across * run + z * dz) / distance
+    u = rho - r0
+    height = a + u * (b + u * (c + u * d))
+    slope = b + u * (2.0 * c + 3.0 * u * d)
     return z - height, dz - slope * run
 
 
 @kernel
-def refine(kind, par, row, px, py, pz, dx, dy, dz, want, a, b):
-    """Root of f in the bracket [a, b], want f(a) <= 0 <= want f(b), by Newton kept inside it."""
-    t = 0.5 * (a + b)
+def refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, low, high):
+    """Root of g in the bracket, want g(low) <= 0 <= want g(high), by Newton kept inside it."""
+    t = 0.5 * (low + high)
     for _ in range(80):
-        f, slope = sag_value(kind, par, row, px, py, pz, dx, dy, dz, t)
-        if want * f > 0.0:
-            b = t
+        g, slope = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, t)
+        if want * g > 0.0:
+            high = t
         else:
-            a = t
-        step = t - f / slope if slope != 0.0 else math.inf
-        if not (a <= step <= b):
-            step = 0.5 * (a + b)
-        if abs(step - t) <= 2e-16 * (1.0 + abs(t)):
-            return step
+            low = t
+        step = t - g / slope if slope != 0.0 else math.inf
+        if not (low <= step <= high):
+            step = 0.5 * (low + high)
+            if step == t:
+                return t
+        elif abs(step - t) <= 1e-9 * (1.0 + abs(t)):
+            return step  # Newton doubles the digits: this step is good to the last one
         t = step
     return t
 
 
 @kernel
-def highest_inside(kind, par, row, px, py, pz, dx, dy, dz, want, a, b):
-    """The t in (a, b) where want f stops growing, by bisection on its slope."""
+def turning_point(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, low, high):
+    """The t in a bracket where want g stops growing, by bisection on its slope."""
     for _ in range(50):
-        m = 0.5 * (a + b)
-        _, slope = sag_value(kind, par, row, px, py, pz, dx, dy, dz, m)
+        m = 0.5 * (low + high)
+        _, slope = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, m)
         if want * slope > 0.0:
-            a = m
+            low = m
         else:
-            b = m
-    return 0.5 * (a + b)
+            high = m
+    return 0.5 * (low + high)
 
 
 @kernel
-def first_crossing(kind, par, row, px, py, pz, dx, dy, dz, want, t0, t1):
-    """First wanted crossing of f in [t0, t1], found by subdivision; infinite: none.
+def surely_below(ga, sa, gb, sb, bend, h):
+    """Whether g stays below zero between two samples h apart where |g''| <= bend; ga, gb <= 0 there."""
+    curve = 0.5 * bend * h * h
+    return max(ga, gb) + 0.25 * curve < 0.0 or ga + sa * h + curve < 0.0 or gb - sb * h + curve < 0.0
 
-    Between samples one pair of crossings is found too, where the slope of f turns.
+
+@kernel
+def first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, t0, t1):
+    """First wanted crossing of g in [t0, t1]; infinite: none.
+
+    Steps as long as a bound on g'' shows that none is jumped over; at the shortest step one pair of crossings
+    between samples is still found, where the slope of g turns.
     """
     if t0 < T_MIN:
         t0 = T_MIN
     if not t0 < t1:
         return math.inf
-    fa, sa = sag_value(kind, par, row, px, py, pz, dx, dy, dz, t0)
-    a = t0
-    for i in range(1, SAMPLES + 1):
-        b = t0 + (t1 - t0) * i / SAMPLES
-        fb, sb = sag_value(kind, par, row, px, py, pz, dx, dy, dz, b)
-        if want * fa <= 0.0:
-            if want * fb > 0.0:
-                return refine(kind, par, row, px, py, pz, dx, dy, dz, want, a, b)
-            if want * sa > 0.0 and want * sb < 0.0:
-                top = highest_inside(kind, par, row, px, py, pz, dx, dy, dz, want, a, b)
-                ft, _ = sag_value(kind, par, row, px, py, pz, dx, dy, dz, top)
-                if want * ft > 0.0:
-                    return refine(kind, par, row, px, py, pz, dx, dy, dz, want, a, top)
-        elif want * fb > 0.0 and want * sa < 0.0 and want * sb > 0.0:
-            # want f dips between the samples: it may cross down and up again inside.
-            low = highest_inside(kind, par, row, px, py, pz, dx, dy, dz, -want, a, b)
-            fl, _ = sag_value(kind, par, row, px, py, pz, dx, dy, dz, low)
-            if want * fl <= 0.0:
-                return refine(kind, par, row, px, py, pz, dx, dy, dz, want, low, b)
-        a, fa, sa = b, fb, sb
+    at, shortest, h = t0, (t1 - t0) / SAMPLES, t1 - t0
+    if bend == math.inf:
+        h = shortest
+    ga, sa = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, at)
+    ga, sa = want * ga, want * sa
+    if bend == CONVEX:
+        gb, sb = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, t1)
+        gb, sb = want * gb, want * sb
+        # Along any ray g is convex: it rises through zero at most once, and falls through it at most once.
+        if want > 0.0:
+            if ga <= 0.0:
+                if gb <= 0.0:
+                    return math.inf
+                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, t1)
+            if sa >= 0.0 or sb <= 0.0:
+                return math.inf
+        else:
+            if ga > 0.0:
+                return math.inf
+            if gb > 0.0:
+                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, t1)
+            if sa <= 0.0 or sb >= 0.0:
+                return math.inf
+        bend = math.inf
+        h = shortest
+    while at < t1:
+        to = at + h
+        if to > t1 - 0.01 * shortest:
+            to = t1
+        gb, sb = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, to)
+        gb, sb = want * gb, want * sb
+        below, above = ga <= 0.0 and gb <= 0.0, ga > 0.0 and gb > 0.0
+        if below and surely_below(ga, sa, gb, sb, bend, to - at):
+            h *= 2.0
+        elif above and surely_below(-ga, -sa, -gb, -sb, bend, to - at):
+            h *= 2.0
+        elif h > 1.5 * shortest:
+            h *= 0.5
+            continue
+        elif ga <= 0.0 and gb > 0.0:
+            return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, to)
+        elif below and sa > 0.0 and sb < 0.0:
+            top = turning_point(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, to)
+            g, _ = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, top)
+            if want * g > 0.0:
+                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, top)
+        elif above and sa < 0.0 and sb > 0.0:
+            # want g dips between the samples: it may cross down and up again inside.
+            dip = turning_point(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, -want, at, to)
+            g, _ = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, dip)
+            if want * g <= 0.0:
+                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, dip, to)
+        at, ga, sa = to, gb, sb
     return math.inf
 
 
 @kernel
-def ring_crossing(kind, par, row, px, py, pz, dx, dy, dz, want, r0, r1, z0, z1):
-    """First wanted crossing with a surface between two radii and two heights."""
-    za, zb = slab_interval(pz, dz, z0, z1)
-    if za > zb or zb < T_MIN:
+def ring_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, inner, outer, low, high, limit):
+    """First wanted crossing with a surface between two radii and two heights, no farther than limit."""
+    za, zb = slab_interval(pz, dz, low, high)
+    if za > zb or zb < T_MIN or za > limit:
         return math.inf
-    oa, ob = radial_interval(px, py, dx, dy, r1)
-    a, b = max(za, oa), min(zb, ob)
-    if a > b or b < T_MIN:
+    oa, ob = radial_interval(px, py, dx, dy, outer)
+    t0, t1 = max(za, oa), min(min(zb, ob), limit)
+    if t0 > t1 or t1 < T_MIN:
         return math.inf
-    ia, ib = radial_interval(px, py, dx, dy, r0) if r0 > 0.0 else (1.0, 0.0)
-    if not ia < ib or ib <= a or ia >= b:
-        return first_crossing(kind, par, row, px, py, pz, dx, dy, dz, want, a, b)
-    # The ray dives inside the inner radius: search before, then after.
-    if ia > a:
-        t = first_crossing(kind, par, row, px, py, pz, dx, dy, dz, want, a, ia)
-        if t < math.inf:
-            return t
-    return first_crossing(kind, par, row, px, py, pz, dx, dy, dz, want, max(a, ib), b)
+    if inner > 0.0:
+        ia, ib = radial_interval(px, py, dx, dy, inner)
+        if ia < ib and ib > t0 and ia < t1:
+            # The ray dives inside the inner radius: search before, then after.
+            if ia > t0:
+                t = first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, t0, ia)
+                if t < math.inf:
+                    return t
+            t0 = ib
+    return first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, t0, t1)
 
 
 @kernel
-def toric_height(par, x, y):
+def toric_height(q, f, x, y):
     """z, dz/dx, dz/dy of a biconic with its own periphery; see faces/cornea.py for the equations."""
-    cx, cy, k, cos, sin = par[0], par[1], par[2], par[3], par[4]
-    join, mode, at, value, edge = par[5], par[6], par[7], par[8], par[9]
+    cx, cy, k, cos, sin = q[f, PAR], q[f, PAR + 1], q[f, PAR + 2], q[f, PAR + 3], q[f, PAR + 4]
+    join, mode, at, value, edge = q[f, PAR + 5], q[f, PAR + 6], q[f, PAR + 7], q[f, PAR + 8], q[f, PAR + 9]
     xs, ys = x * cos + y * sin, y * cos - x * sin
     r2 = xs * xs + ys * ys
     if r2 < 1e-24:
@@ -235,136 +283,152 @@ def periphery_height(a, b, r, join, mode, at, value, edge):
 
 
 @kernel
-def crossing(kind, par, pieces, first, last, ext, px, py, pz, dx, dy, dz, want):
-    """Distance to the first wanted crossing with a face, in the face's frame; infinite: none.
+def crossing(q, f, pieces, px, py, pz, dx, dy, dz, want, limit):
+    """Distance to the first wanted crossing with face f, in the face's own frame; infinite: none.
 
-    ext : r_min, r_max, z_min, z_max of the face. first, last : its rows in pieces.
+    Crossings farther than limit need not be found.
     """
+    kind = int(q[f, KIND])
     t = math.inf
     if kind == PLANE:
         if dz * want > 0.0:
             t = -pz / dz
     elif kind == CONIC:
-        t = conic_crossing(par[0], par[1], px, py, pz, dx, dy, dz, want)
+        t = conic_crossing(q[f, PAR], q[f, PAR + 1], px, py, pz, dx, dy, dz, want)
     elif kind == CYLINDER:
-        t = quadratic_crossing(dx * dx + dy * dy, px * dx + py * dy, px * px + py * py - par[0] * par[0], want)
+        radius = q[f, PAR]
+        t = quadratic_crossing(dx * dx + dy * dy, px * dx + py * dy, px * px + py * py - radius * radius, want)
     elif kind == CONE:
-        r, m = par[0] + par[1] * pz, par[1]
+        m = q[f, PAR + 1]
+        r = q[f, PAR] + m * pz
         t = quadratic_crossing(dx * dx + dy * dy - m * m * dz * dz, px * dx + py * dy - m * r * dz,
                                px * px + py * py - r * r, want)
         if t < math.inf and r + m * t * dz < 0.0:
             return math.inf
     elif kind == RING_ARC:
-        return arc_crossing(par, pieces, ext, px, py, pz, dx, dy, dz, want)
+        return arc_crossing(q, f, px, py, pz, dx, dy, dz, want, limit)
     elif kind == TORIC:
-        return ring_crossing(kind, par, par, px, py, pz, dx, dy, dz, want, 0.0, min(ext[1], 60.0), -60.0, 60.0)
+        return ring_crossing(kind, q, f, 0.0, 0.0, 0.0, 0.0, 0.0, math.inf, px, py, pz, dx, dy, dz, want, 0.0,
+                             min(q[f, EXT + 1], FAR_MM), -FAR_MM, FAR_MM, limit)
     else:
         if kind == ROUND_CORNEA:
-            t = conic_crossing(par[0], par[1], px, py, pz, dx, dy, dz, want)
+            t = conic_crossing(q[f, PAR], q[f, PAR + 1], px, py, pz, dx, dy, dz, want)
             if t < math.inf:
                 x, y = px + t * dx, py + t * dy
-                if x * x + y * y > par[2] * par[2]:
+                join2 = q[f, PAR + 2] * q[f, PAR + 2]
+                if x * x + y * y > join2:
                     t = math.inf
-        for i in range(first, last):
-            row = pieces[i]
-            other = ring_crossing(kind, par, row, px, py, pz, dx, dy, dz, want, row[0], row[1], row[6], row[7])
+                elif px * px + py * py <= join2:
+                    # Start and hit lie within the centre, so the way between them does too.
+                    return t
+        for i in range(int(q[f, PIECE_FROM]), int(q[f, PIECE_TO])):
+            other = ring_crossing(kind, q, f, pieces[i, 0], pieces[i, 2], pieces[i, 3], pieces[i, 4], pieces[i, 5],
+                                  pieces[i, 8], px, py, pz, dx, dy, dz, want, pieces[i, 0], pieces[i, 1], pieces[i, 6],
+                                  pieces[i, 7], min(t, limit))
             t = min(t, other)
     if not T_MIN <= t < math.inf:
         return math.inf
     z = pz + t * dz
-    if not ext[2] <= z <= ext[3]:
+    if not q[f, EXT + 2] <= z <= q[f, EXT + 3]:
         return math.inf
-    if ext[0] > 0.0 or ext[1] < math.inf:
+    inner, outer = q[f, EXT], q[f, EXT + 1]
+    if inner > 0.0 or outer < math.inf:
         x, y = px + t * dx, py + t * dy
         rho = math.sqrt(x * x + y * y)
-        if rho < ext[0] - 1e-9 or rho > ext[1] + 1e-9:
+        if rho < inner - 1e-9 or rho > outer + 1e-9:
             return math.inf
     return t
 
 
 @kernel
-def arc_crossing(par, pieces, ext, px, py, pz, dx, dy, dz, want):
+def arc_crossing(q, f, px, py, pz, dx, dy, dz, want, limit):
     """First wanted crossing with a piece of a torus, its angles respected."""
     after = T_MIN
     for _ in range(3):
         # Shift the start past hits that lie on the rest of the torus.
-        t = ring_crossing(RING_ARC, par, par, px + after * dx, py + after * dy, pz + after * dz, dx, dy, dz,
-                          want, ext[0], ext[1], ext[2], ext[3])
+        t = ring_crossing(RING_ARC, q, f, 0.0, 0.0, 0.0, 0.0, 0.0, math.inf, px + after * dx, py + after * dy,
+                          pz + after * dz, dx, dy, dz, want, q[f, EXT], q[f, EXT + 1], q[f, EXT + 2], q[f, EXT + 3],
+                          limit - after)
         if not t < math.inf:
             return math.inf
         t += after
         x, y, z = px + t * dx, py + t * dy, pz + t * dz
-        angle = math.atan2(z, math.sqrt(x * x + y * y) - par[0])
-        if par[2] - 1e-9 <= angle <= par[3] + 1e-9:
+        angle = math.atan2(z, math.sqrt(x * x + y * y) - q[f, PAR])
+        if q[f, PAR + 2] - 1e-9 <= angle <= q[f, PAR + 3] + 1e-9:
             return t
         after = t + 1e-9
     return math.inf
 
 
 @kernel
-def normal_at(kind, par, pieces, first, last, x, y, z):
-    """Forward unit normal at a point of the surface, in the face's frame."""
+def normal_at(q, f, pieces, x, y, z):
+    """Forward unit normal at a point of face f, in the face's own frame."""
+    kind = int(q[f, KIND])
     if kind == PLANE:
         return 0.0, 0.0, 1.0
     rho2 = x * x + y * y
-    rho = math.sqrt(rho2)
-    if kind == CONIC or (kind == ROUND_CORNEA and rho <= par[2]):
-        nx, ny, nz = par[0] * x, par[0] * y, 1.0 + par[0] * par[1] * z
+    if kind == CONIC or (kind == ROUND_CORNEA and rho2 <= q[f, PAR + 2] * q[f, PAR + 2]):
+        c = q[f, PAR]
+        nx, ny, nz = c * x, c * y, 1.0 + c * q[f, PAR + 1] * z
     elif kind == CYLINDER:
         nx, ny, nz = x, y, 0.0
     elif kind == CONE:
-        nx, ny, nz = x, y, -par[1] * rho
+        nx, ny, nz = x, y, -q[f, PAR + 1] * math.sqrt(rho2)
     elif kind == RING_ARC:
-        out = (rho - par[0]) / rho
+        rho = math.sqrt(rho2)
+        out = (rho - q[f, PAR]) / rho
         nx, ny, nz = out * x, out * y, z
     elif kind == TORIC:
-        _, zx, zy = toric_height(par, x, y)
+        _, zx, zy = toric_height(q, f, x, y)
         nx, ny, nz = -zx, -zy, 1.0
     else:
-        i = piece_of(pieces, first, last, rho)
+        rho = math.sqrt(rho2)
+        i = piece_of(q, f, pieces, rho)
         u = rho - pieces[i, 0]
         slope = pieces[i, 3] + u * (2.0 * pieces[i, 4] + 3.0 * u * pieces[i, 5])
         over = slope / rho if rho > 0.0 else 0.0
         nx, ny, nz = -over * x, -over * y, 1.0
-    length = math.sqrt(nx * nx + ny * ny + nz * nz)
-    return nx / length, ny / length, nz / length
+    scale = 1.0 / math.sqrt(nx * nx + ny * ny + nz * nz)
+    return nx * scale, ny * scale, nz * scale
 
 
 @kernel
-def piece_of(pieces, first, last, rho):
+def piece_of(q, f, pieces, rho):
     """Row of the cubic piece that holds a radius; the end pieces run on."""
-    i = first
+    i, last = int(q[f, PIECE_FROM]), int(q[f, PIECE_TO])
     while i < last - 1 and rho > pieces[i, 1]:
         i += 1
     return i
 
 
 @kernel
-def side_of(kind, par, pieces, first, last, ext, x, y, z):
-    """Positive ahead of a face, not positive behind it, in the face's frame."""
+def side_of(q, f, pieces, x, y, z):
+    """Positive ahead of face f, not positive behind it, in the face's own frame."""
+    kind = int(q[f, KIND])
     if kind == PLANE:
         return z
     rho2 = x * x + y * y
-    if kind == CONIC or (kind == ROUND_CORNEA and rho2 <= par[2] * par[2]):
-        c, k = par[0], par[1]
-        under = 1.0 - k * c * c * rho2
+    if kind == CONIC or (kind == ROUND_CORNEA and rho2 <= q[f, PAR + 2] * q[f, PAR + 2]):
+        c = q[f, PAR]
+        under = 1.0 - q[f, PAR + 1] * c * c * rho2
         if under <= 0.0:
             return -1.0
         return z + c * rho2 / (1.0 + math.sqrt(under))
     rho = math.sqrt(rho2)
     if kind == CYLINDER:
-        return rho - par[0]
+        return rho - q[f, PAR]
     if kind == CONE:
-        return rho - (par[0] + par[1] * z)
+        return rho - (q[f, PAR] + q[f, PAR + 1] * z)
     if kind == RING_ARC:
-        return math.sqrt((rho - par[0]) ** 2 + z * z) - par[1]
+        across = rho - q[f, PAR]
+        return math.sqrt(across * across + z * z) - q[f, PAR + 1]
     if kind == TORIC:
-        if rho >= ext[1]:
+        if rho >= q[f, EXT + 1]:
             return -1.0
-        height, _, _ = toric_height(par, x, y)
+        height, _, _ = toric_height(q, f, x, y)
         return z - height
-    if kind == PROFILE and (rho < ext[0] - 1e-9 or rho > ext[1] + 1e-9):
+    if kind == PROFILE and (rho < q[f, EXT] - 1e-9 or rho > q[f, EXT + 1] + 1e-9):
         return -1.0
-    i = piece_of(pieces, first, last, rho)
+    i = piece_of(q, f, pieces, rho)
     u = rho - pieces[i, 0]
     return z - (pieces[i, 2] + u * (pieces[i, 3] + u * (pieces[i, 4] + u * pieces[i, 5])))

@@ -48,4 +48,4 @@ def _bisect(viewer: Viewer, target: Target, fan: Fan, low: float, high: float, a
             high = middle
         else:
             low, at_low = middle, miss
-    return 0.5 * (low + high)
+    return float(0.5 * (low + high))

@@ -7,6 +7,8 @@ from typing import Mapping
 
 import numpy as np
 
+from ..faces import Lowered
+from ..faces.base import TORIC
 from .bodies import FINISHES, OPAQUE, Body, Face
 
 AIR_BODY, OPAQUE_BODY = -1, -2
@@ -28,19 +30,23 @@ class CompiledScene:
 
     def __post_init__(self):
         self.face_number = {face.name: i for i, face in enumerate(self.faces)}
-        self._fixed = {**_face_arrays(self.faces), **self._body_arrays()}
+        table, pieces = face_table(self.faces)
+        self._fixed = {"faces": table, "pieces": pieces, **self._body_arrays()}
 
     def arrays(self, wavelength_nm: float):
         """The scene as `SceneArrays` at a wavelength in nm; kept, so that asking again is free."""
         from ..kernels.arrays import SceneArrays
 
         if wavelength_nm not in self._by_wavelength:
-            index = np.array([self._index(body.medium, wavelength_nm) for body in self.bodies])
-            self._by_wavelength[wavelength_nm] = SceneArrays(index=index, **self._fixed)
+            optics = np.array([self._optics(body.medium, wavelength_nm) for body in self.bodies])
+            self._by_wavelength[wavelength_nm] = SceneArrays(optics=optics, **self._fixed)
         return self._by_wavelength[wavelength_nm]
 
-    def _index(self, medium: str, wavelength_nm: float) -> float:
-        return 1.0 if medium == OPAQUE else float(self.media[medium].index(wavelength_nm))
+    def _optics(self, medium: str, wavelength_nm: float) -> tuple[float, float]:
+        """Index and absorption per mm of a medium."""
+        if medium == OPAQUE:
+            return 1.0, 0.0
+        return float(self.media[medium].index(wavelength_nm)), float(self.media[medium].absorption_per_mm)
 
     def _body_arrays(self) -> dict:
         """Sides, neighbours and entry checks of all bodies."""
@@ -49,48 +55,50 @@ class CompiledScene:
         checks = [body.sides if body.entry_checks is None else body.entry_checks for body in self.bodies]
         near = [[other for other, face, sign in sides if face == f and sign == -s and other != b]
                 for b, f, s in sides]
+        near_from, side_from, check_from = (_offsets([len(row) for row in rows])
+                                            for rows in (near, [body.sides for body in self.bodies], checks))
         beyond = [OPAQUE_BODY if self.faces[f].beyond == "opaque" else AIR_BODY for _, f, _ in sides]
-        air_side = [i for i, (b, _, _) in enumerate(sides) if self.bodies[b].open_to_air]
+        air = sorted((i for i, (b, _, _) in enumerate(sides) if self.bodies[b].open_to_air),
+                     key=lambda i: sides[i][1:])
+        opaque = [int(body.medium == OPAQUE) for body in self.bodies]
+        rows = [(f, s, outside, near_from[i], near_from[i + 1], b)
+                for i, ((b, f, s), outside) in enumerate(zip(sides, beyond))]
         return {
-            "side_from": _offsets([len(body.sides) for body in self.bodies]),
-            "side_face": np.array([f for _, f, _ in sides], dtype=np.int64),
-            "side_sign": np.array([s for _, _, s in sides], dtype=np.float64),
-            "beyond": np.array(beyond, dtype=np.int64),
-            "near_from": _offsets([len(row) for row in near]),
-            "near_body": np.array([b for row in near for b in row], dtype=np.int64),
-            "check_from": _offsets([len(row) for row in checks]),
-            "check_face": np.array([self.face_number[n] for row in checks for n, _ in row], dtype=np.int64),
-            "check_sign": np.array([_sign(side) for row in checks for _, side in row], dtype=np.float64),
-            "air_side": np.array(air_side, dtype=np.int64),
-            "body_of": np.array([b for b, _, _ in sides], dtype=np.int64),
-            "absorption": np.array([0.0 if body.medium == OPAQUE else self.media[body.medium].absorption_per_mm
-                                    for body in self.bodies]),
-            "opaque": np.array([int(body.medium == OPAQUE) for body in self.bodies], dtype=np.int64),
+            "sides": _whole(rows, 6),
+            "bodies": _whole(list(zip(side_from[:-1], side_from[1:], check_from[:-1], check_from[1:], opaque)), 5),
+            "checks": _whole([(self.face_number[n], _sign(side)) for row in checks for n, side in row], 2),
+            "near": np.array([b for row in near for b in row], dtype=np.int64),
+            "air": np.array(air, dtype=np.int64),
         }
 
 
-def _sign(side: str) -> float:
-    return 1.0 if side == "ahead" else -1.0
+def _whole(rows: list, columns: int) -> np.ndarray:
+    """Rows of whole numbers as an array, also where there are none."""
+    return np.array(rows, dtype=np.int64).reshape(-1, columns)
 
 
-def _offsets(counts: list[int]) -> np.ndarray:
-    return np.concatenate([[0], np.cumsum(counts)]).astype(np.int64)
+def _sign(side: str) -> int:
+    return 1 if side == "ahead" else -1
 
 
-def _face_arrays(faces: tuple[Face, ...]) -> dict:
-    """Shapes, placements and finishes of all faces."""
+def _offsets(counts: list[int]) -> list[int]:
+    return [0, *np.cumsum(counts).tolist()]
+
+
+def face_table(faces: tuple[Face, ...]) -> tuple[np.ndarray, np.ndarray]:
+    """Shapes, placements and finishes of faces: the kernels' face table and its cubic pieces."""
     lowered = [face.shape.lower() for face in faces]
-    rotation = np.array([face.rotation for face in faces], dtype=float)
-    return {
-        "kind": np.array([low.kind for low in lowered], dtype=np.int64),
-        "par": np.array([low.parameters for low in lowered]),
-        "ext": np.array([[low.r_min_mm, low.r_max_mm, low.z_min_mm, low.z_max_mm] for low in lowered]),
-        "rot": np.ascontiguousarray(rotation),
-        "org": np.array([face.origin_mm for face in faces], dtype=float),
-        "turned": np.array([bool(np.any(r != np.eye(3))) for r in rotation]),
-        "piece_from": _offsets([len(low.pieces) for low in lowered]),
-        "pieces": np.ascontiguousarray(np.concatenate([low.pieces.reshape(-1, 8) for low in lowered])),
-        "finish": np.array([FINISHES.index(face.finish) for face in faces], dtype=np.int64),
-        "reflectance": np.array([face.reflectance or 0.0 for face in faces]),
-        "intended": np.array([int(face.works_by == "total_reflection") for face in faces], dtype=np.int64),
-    }
+    piece_from = _offsets([len(low.pieces) for low in lowered])
+    rows = [_face_row(face, low, piece_from[i], piece_from[i + 1]) for i, (face, low) in enumerate(zip(faces, lowered))]
+    return np.array(rows), np.ascontiguousarray(np.concatenate([low.pieces.reshape(-1, 9) for low in lowered]))
+
+
+def _face_row(face: Face, low: Lowered, piece_from: int, piece_to: int) -> np.ndarray:
+    """One row of the face table; the columns are named in `kernels/arrays.py`."""
+    # A turn about its own axis does nothing to a surface of revolution.
+    turned = bool(np.any(face.rotation != np.eye(3)) if low.kind == TORIC else face.rotation[2, 2] != 1.0)
+    return np.concatenate([
+        [low.kind, FINISHES.index(face.finish), face.reflectance or 0.0, face.works_by == "total_reflection", turned,
+         piece_from, piece_to],
+        face.origin_mm, np.ravel(face.rotation), low.parameters,
+        [low.r_min_mm, low.r_max_mm, low.z_min_mm, low.z_max_mm]])

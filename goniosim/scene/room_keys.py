@@ -22,7 +22,7 @@ POINT = Key("point_mm", "numbers", "a point in the eye frame: origin at the corn
 
 def uses(what: str, default=None) -> tuple[Key, Key]:
     """The two ways to name a plugin: by name, or with its whole definition written out."""
-    rule = "" if default is None else f"; {default} where left out"
+    rule = "; needed unless it is written out as definition" if default is None else f"; {default} where left out"
     return (
         Key("use", "name", f"name of the {what}{rule}", default=None),
         Key("definition", "map", f"the {what} written out in full, with the keys of its own file; "
@@ -125,7 +125,7 @@ SCENE_KEYS: tuple[Key, ...] = (
         "up", default=None),
     Key("settings", "map", "floors and habits that replace the room's", default=None),
     Key("marks", "map", "which values were measured, given or assumed; written by the plan", default=None),
-    Key("notes", "any", "what was said while resolving; written by the plan", default=None),
+    Key("notes", "texts", "what was said while resolving; written by the plan", default=None),
 )
 
 SCOPE_KEYS: tuple[Key, ...] = (
@@ -176,7 +176,7 @@ SETTINGS_KEYS: tuple[Key, ...] = (
     Key("page", "map", "the printed page", default=None, keys=(
         Key("size", "choice", "size of the paper", default=None, choices=("a4", "letter")),
     )),
-    Key("cautions", "texts", "local cautions, printed under the program's own", default=None),
+    Key("cautions", "text", "local cautions, one a line, printed under the program's own", default=None),
 )
 
 ROOM_KEYS: tuple[Key, ...] = (
@@ -188,8 +188,8 @@ ROOM_KEYS: tuple[Key, ...] = (
         minimum=0.0, maximum=45.0, source=COMMON_PRACTICE),
     Key("max_gaze_deg", "number", "greatest turn of the eye that can be asked for", default=20.0, unit="deg",
         minimum=0.0, maximum=60.0, source=COMMON_PRACTICE),
-    Key("seat_clocks", "clocks", "clock hours at which a surgeon can sit", default=(9.0, 12.0, 3.0),
-        source=COMMON_PRACTICE),
+    Key("seat_clocks", "numbers", "clock hours at which a surgeon can sit", default=(9.0, 12.0, 3.0), above=0.0,
+        maximum=12.0, source=COMMON_PRACTICE),
     Key("settings", "map", "floors and habits of this room; they replace those of configs/default.yaml",
         default=None),
 )

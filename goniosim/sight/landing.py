@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from ..eye import BuiltEye
+from ..scene.compile import face_table
 
 NO_WALL = ("lens", "pupil")  # structures along which no distance from the target is told
 
@@ -46,17 +47,12 @@ def land(eye: BuiltEye, start_mm: np.ndarray, direction: np.ndarray, target_arc_
 def crossing_of(eye: BuiltEye, name: str, start_mm: np.ndarray, direction: np.ndarray, side: str = "behind",
                 inward: bool = False) -> float | None:
     """Distance to the crossing that leaves a region on one side of a face (or enters it), or None."""
-    from ..kernels.shapes import crossing
+    from ..kernels.bundle import face_crossing
 
-    face = eye.faces[name]
-    low = face.shape.lower()
-    pieces = np.ascontiguousarray(low.pieces)
-    extent = np.array([low.r_min_mm, low.r_max_mm, low.z_min_mm, low.z_max_mm])
+    table, pieces = face_table((eye.faces[name],))
     want = (1.0 if side == "behind" else -1.0) * (-1.0 if inward else 1.0)
-    p = (start_mm - face.origin_mm) @ face.rotation
-    d = direction @ face.rotation
-    t = crossing(low.kind, low.parameters, pieces, 0, len(pieces), extent, *p, *d, want)
-    return float(t) if np.isfinite(t) else None
+    t = float(face_crossing(table, 0, pieces, *start_mm, *direction, want, np.inf))
+    return t if np.isfinite(t) else None
 
 
 def _anterior(eye: BuiltEye, point: np.ndarray, structure: str, target_arc_mm, target_clock) -> float | None:
