@@ -18,8 +18,12 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Arguments of the command."""
     actions = parser.add_subparsers(dest="action", required=True, metavar="from|columns")
     making = actions.add_parser("from", help="write one eye file for every row of a table")
-    making.add_argument("table", metavar="TABLE", type=Path, help="CSV or JSON; one row an eye, columns by name")
-    making.add_argument("--into", metavar="DIR", type=Path, default=Path("eyes"), help="folder to write to (eyes)")
+    making.add_argument(
+        "table", metavar="TABLE", type=Path, help="CSV or JSON; one row an eye, columns by name"
+    )
+    making.add_argument(
+        "--into", metavar="DIR", type=Path, default=Path("eyes"), help="folder to write to (eyes)"
+    )
     making.add_argument("--replace", action="store_true", help="write over eye files of the same names")
     making.add_argument("--ignore-unknown", action="store_true", help="pass over columns that are not known")
     showing = actions.add_parser("columns", help="every column that a table may have")
@@ -37,10 +41,24 @@ def _from(args: argparse.Namespace) -> int:
     eyes = eyes_of(table, str(args.table))
     files = write_eyes(eyes, args.into, args.replace)
     if args.json:
-        print_json({
-            "caution": CAUTION, "not_read": table.not_read, "ignored": table.ignored,
-            "eyes": [{"file": str(file), "name": eye.name, "side": eye.side, "row": eye.row,
-                      "measured": list(eye.measured), "notes": list(eye.notes)} for eye, file in zip(eyes, files)]})
+        print_json(
+            {
+                "caution": CAUTION,
+                "not_read": table.not_read,
+                "ignored": table.ignored,
+                "eyes": [
+                    {
+                        "file": str(file),
+                        "name": eye.name,
+                        "side": eye.side,
+                        "row": eye.row,
+                        "measured": list(eye.measured),
+                        "notes": list(eye.notes),
+                    }
+                    for eye, file in zip(eyes, files)
+                ],
+            }
+        )
         return ExitCode.DONE
     _print_eyes(eyes, files, args.into)
     _print_columns_left(table)
@@ -61,17 +79,27 @@ def _print_eyes(eyes: list[TableEye], files: list[Path], folder: Path) -> None:
 
 def _print_columns_left(table: Table) -> None:
     if table.not_read:
-        print(f"Not read, because they may identify a person: {', '.join(table.not_read)}. They are in no file written here.")
+        print(
+            f"Not read, because they may identify a person: {', '.join(table.not_read)}. "
+            "They are in no file written here."
+        )
     if table.ignored:
         print(f"Not known and passed over: {', '.join(table.ignored)}")
 
 
 def _columns(args: argparse.Namespace) -> int:
     if args.json:
-        numbers = [{"name": c.name, "unit": c.unit, "from": c.low, "to": c.high, "meaning": c.meaning}
-                   for c in COLUMNS.values()]
-        print_json({"caution": CAUTION, "columns": [{"name": name, "meaning": meaning}
-                                                    for name, meaning in TEXT_COLUMNS.items()] + numbers})
+        numbers = [
+            {"name": c.name, "unit": c.unit, "from": c.low, "to": c.high, "meaning": c.meaning}
+            for c in COLUMNS.values()
+        ]
+        print_json(
+            {
+                "caution": CAUTION,
+                "columns": [{"name": name, "meaning": meaning} for name, meaning in TEXT_COLUMNS.items()]
+                + numbers,
+            }
+        )
         return ExitCode.DONE
     for name, meaning in TEXT_COLUMNS.items():
         print(f"{name:<19} {meaning}")

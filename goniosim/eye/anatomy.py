@@ -15,15 +15,25 @@ from .meridian import from_steep_deg, meridian_at
 from .structures import CORNEA, IRIS, LENS, PUPIL
 from .structures import CILIARY_FACE as ON_CILIARY_FACE
 
-ON_FACE = {"iris-margin": IRIS, "iris-back": IRIS, "lens-front": LENS, "lens-equator": LENS, "lens-back": LENS,
-           "vitreous-front": PUPIL, "zonule": PUPIL, "ciliary-wall": ON_CILIARY_FACE}
+ON_FACE = {
+    "iris-margin": IRIS,
+    "iris-back": IRIS,
+    "lens-front": LENS,
+    "lens-equator": LENS,
+    "lens-back": LENS,
+    "vitreous-front": PUPIL,
+    "zonule": PUPIL,
+    "ciliary-wall": ON_CILIARY_FACE,
+}
 
 
 @dataclass(frozen=True)
 class Anatomy:
-    """Structures of one eye, in the eye frame. Arcs are mm along the inner lining from the spur (`lining.py`).
+    """Structures of one eye, in the eye frame. Arcs are mm along the inner lining from the spur
+    (`lining.py`).
 
-    side : 'right' or 'left'. canal_width_mm, canal_depth_mm : Schlemm's canal. mean : the mean meridian's lining.
+    side : 'right' or 'left'. canal_width_mm, canal_depth_mm : Schlemm's canal. mean : the mean meridian's
+    lining.
     """
 
     side: str
@@ -60,7 +70,9 @@ class Anatomy:
             return self.mean
         if clock not in self._linings:
             cornea = self.cornea
-            wall = meridian_at(cornea.back, -cornea.thickness_mm, cornea.spur_r_mm, from_steep_deg(cornea.back, clock))
+            wall = meridian_at(
+                cornea.back, -cornea.thickness_mm, cornea.spur_r_mm, from_steep_deg(cornea.back, clock)
+            )
             self._linings[clock] = Lining(wall, self.mean.recess, self.mean.iris)
         return self._linings[clock]
 
@@ -69,7 +81,7 @@ class Anatomy:
         return self.bands.height_mm(clock)
 
     def band(self, structure: str, clock: float) -> tuple[float, float]:
-        """Arcs of the posterior and anterior edge of a structure; the pupil margin is a line, both the same."""
+        """Arcs of a structure's posterior and anterior edge; the pupil margin is a line, both the same."""
         return self.bands.of(structure, clock)
 
     def point(self, structure: str, clock: float, across: float = 0.5) -> np.ndarray:
@@ -105,7 +117,7 @@ class Anatomy:
         return self.lining(12.0 if clock is None else clock).arc_of(math.hypot(x, y), float(z))
 
     def structure_at(self, point_mm: np.ndarray, face_name: str) -> str:
-        """What lies at a point of an inner face: a band's name, or cornea, iris, lens, pupil, ciliary-face."""
+        """What lies at a point of an inner face: a band, or cornea, iris, lens, pupil, ciliary-face."""
         if face_name not in (CORNEA_BACK, CILIARY_FACE, IRIS_FRONT):
             return ON_FACE[face_name]
         clock = clock_of(point_mm[0], point_mm[1])
@@ -119,10 +131,14 @@ class Anatomy:
         return np.array([x, y, float(self.cornea.front.sag(x, y))])
 
     def canal(self, clock: float) -> tuple[np.ndarray, np.ndarray]:
-        """Posterior and anterior end of Schlemm's canal, behind the wall from the spur's band on, two (3,) mm."""
+        """Posterior and anterior end of Schlemm's canal, behind the wall from the spur's band on, two (3,)
+        mm.
+        """
         start = self.band("scleral-spur", clock)[1]
         ends = (start, start + self.canal_width_mm)
-        return tuple(self.wall_point(arc, clock) - self.canal_depth_mm * self.wall_normal(arc, clock) for arc in ends)
+        return tuple(
+            self.wall_point(arc, clock) - self.canal_depth_mm * self.wall_normal(arc, clock) for arc in ends
+        )
 
 
 def in_eye(plane_vector: np.ndarray, clock: float) -> np.ndarray:

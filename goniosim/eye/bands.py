@@ -1,4 +1,4 @@
-"""Where the bands of the angle lie, as arc lengths along the inner lining from the spur, anterior positive."""
+"""Where the bands of the angle lie, as arc lengths along the lining from the spur, anterior positive."""
 
 from __future__ import annotations
 
@@ -7,14 +7,24 @@ from dataclasses import dataclass
 from typing import Mapping
 
 from ..frames import nasal_clock
-from .structures import (CILIARY_BAND, CLEAR_MESHWORK, IRIS_MID, IRIS_ROOT, PIGMENTED_MESHWORK, PUPIL_MARGIN,
-                         SCHWALBE_LINE, SCLERAL_SPUR)
+from .structures import (
+    CILIARY_BAND,
+    CLEAR_MESHWORK,
+    IRIS_MID,
+    IRIS_ROOT,
+    PIGMENTED_MESHWORK,
+    PUPIL_MARGIN,
+    SCHWALBE_LINE,
+    SCLERAL_SPUR,
+)
 
 ROOT_BAND_MM = 0.05  # width given to the iris root, half of it on the iris
 MID_SHARE = (0.45, 0.55)  # of the iris's front from root to margin, counted as its middle
 
 
-def heights_by_clock(meshwork_um: float | Mapping[str, float], side: str) -> tuple[float, float, float, float]:
+def heights_by_clock(
+    meshwork_um: float | Mapping[str, float], side: str
+) -> tuple[float, float, float, float]:
     """Meshwork height in mm at 12, 3, 6 and 9 o'clock; nasal is 3 for a right eye, 9 for a left one."""
     if not isinstance(meshwork_um, Mapping):
         return (meshwork_um / 1000.0,) * 4
@@ -37,7 +47,8 @@ class Bands:
     margin_mm: float
 
     def height_mm(self, clock: float) -> float:
-        """Meshwork height, spur to Schwalbe's line: exact at 12, 3, 6 and 9, cos^2 weights between neighbours.
+        """Meshwork height, spur to Schwalbe's line: exact at 12, 3, 6 and 9, cos^2 weights between
+        neighbours.
 
         The weights' slope is zero at the quadrants, so the height is smooth all round.
         """
@@ -63,8 +74,17 @@ class Bands:
         }[structure]
 
     def holding(self, arc: float, clock: float) -> str | None:
-        """The band of the angle that holds an arc; None outside them all. The iris root wins over its neighbour."""
-        for structure in (IRIS_ROOT, SCHWALBE_LINE, CLEAR_MESHWORK, PIGMENTED_MESHWORK, SCLERAL_SPUR, CILIARY_BAND):
+        """The band of the angle that holds an arc; None outside them all. The iris root wins over its
+        neighbour.
+        """
+        for structure in (
+            IRIS_ROOT,
+            SCHWALBE_LINE,
+            CLEAR_MESHWORK,
+            PIGMENTED_MESHWORK,
+            SCLERAL_SPUR,
+            CILIARY_BAND,
+        ):
             low, high = self.of(structure, clock)
             if low <= arc <= high:
                 return structure

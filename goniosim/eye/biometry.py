@@ -15,8 +15,14 @@ from .table import ADVICE, Row, Table
 SIDES = {"right": "right", "left": "left", "od": "right", "os": "left", "r": "right", "l": "left"}
 KINDS = ("natural", "artificial", "none")
 USUAL_THICKNESS_UM = 545.0
-CHOICES = (("k1_d", "r1_mm"), ("k2_d", "r2_mm"), ("k_mean_d", "r_mean_mm"), ("acd_epithelium_mm", "acd_endothelium_mm"),
-           ("width_mm", "wtw_mm"), ("vault_mm", "vault_um"))
+CHOICES = (
+    ("k1_d", "r1_mm"),
+    ("k2_d", "r2_mm"),
+    ("k_mean_d", "r_mean_mm"),
+    ("acd_epithelium_mm", "acd_endothelium_mm"),
+    ("width_mm", "wtw_mm"),
+    ("vault_mm", "vault_um"),
+)
 
 
 @dataclass(frozen=True)
@@ -56,19 +62,29 @@ def _eye_of(row: Row) -> tuple[TableEye | None, list[Fault]]:
         faults.append(row.fault(SIDE_COLUMN, f"must be right, left, OD or OS; {got}"))
     kind = str(row.cells.get(LENS_COLUMN, "natural")).strip().lower()
     if kind not in KINDS:
-        faults.append(row.fault(LENS_COLUMN, f"must be natural, artificial or none; got '{row.cells[LENS_COLUMN]}'"))
+        faults.append(
+            row.fault(LENS_COLUMN, f"must be natural, artificial or none; got '{row.cells[LENS_COLUMN]}'")
+        )
     label = str(row.cells.get(LABEL_COLUMN, f"eye-{row.number:02d}")).strip()
     if not is_label(label):
         # What stands there is not repeated: it may be a person's name.
-        faults.append(row.fault(LABEL_COLUMN, "must be a name of small letters, digits and single hyphens, such as "
-                                              "'case-07', and must not identify a person"))
+        faults.append(
+            row.fault(
+                LABEL_COLUMN,
+                "must be a name of small letters, digits and single hyphens, such as "
+                "'case-07', and must not identify a person",
+            )
+        )
     faults += _contradictions(row, numbers)
     if faults:
         return None, faults
     definition, measured, notes = _definition(numbers, kind if LENS_COLUMN in row.cells else None)
     faults = _standing(row, definition, side, notes)
-    return (None, faults) if faults else (
-        TableEye(label, side, row.number, definition, tuple(measured), tuple(notes)), [])
+    return (
+        (None, faults)
+        if faults
+        else (TableEye(label, side, row.number, definition, tuple(measured), tuple(notes)), [])
+    )
 
 
 def _numbers(row: Row) -> tuple[dict[str, float], list[Fault]]:
@@ -106,24 +122,47 @@ def _not_a_number(cell: Any) -> str:
 
 def _contradictions(row: Row, numbers: dict[str, float]) -> list[Fault]:
     """The same thing given twice, halves of a pair, and a depth that the cornea alone fills."""
-    faults = [row.fault(b, f"says the same as {a}; give one of them") for a, b in CHOICES if a in numbers and b in numbers]
+    faults = [
+        row.fault(b, f"says the same as {a}; give one of them")
+        for a, b in CHOICES
+        if a in numbers and b in numbers
+    ]
     flat, steep = _front_radius(numbers, "1"), _front_radius(numbers, "2")
     mean = _front_radius(numbers, "_mean")
-    if (flat is None) != (steep is None):
-        faults.append(row.fault("k2_d" if steep is None else "k1_d", "is missing: flat and steep readings go together; a "
-                                                                     "single one goes into k_mean_d or r_mean_mm"))
+    has_flat, has_steep = (any(name in row.cells for name in pair) for pair in CHOICES[:2])
+    if has_flat != has_steep:
+        faults.append(
+            row.fault(
+                "k1_d" if has_steep else "k2_d",
+                "is missing: flat and steep readings go together; a "
+                "single one goes into k_mean_d or r_mean_mm",
+            )
+        )
     if mean is not None and (flat is not None or steep is not None):
-        faults.append(row.fault("k_mean_d" if "k_mean_d" in numbers else "r_mean_mm",
-                                "stands beside flat and steep readings; give one of them"))
+        faults.append(
+            row.fault(
+                "k_mean_d" if "k_mean_d" in numbers else "r_mean_mm",
+                "stands beside flat and steep readings; give one of them",
+            )
+        )
     if flat is not None and steep is not None and flat < steep:
-        faults.append(row.fault("k1_d" if "k1_d" in numbers else "r1_mm",
-                                "is steeper than the second reading; the first is the flat one. Change them over, with "
-                                "k_axis_deg the meridian of the steep one"))
+        faults.append(
+            row.fault(
+                "k1_d" if "k1_d" in numbers else "r1_mm",
+                "is steeper than the second reading; the first is the flat one. Change them over, with "
+                "k_axis_deg the meridian of the steep one",
+            )
+        )
     if "acd_epithelium_mm" in numbers:
         depth = numbers["acd_epithelium_mm"] - numbers.get("cct_um", USUAL_THICKNESS_UM) / 1000.0
         if depth < COLUMNS["acd_endothelium_mm"].low:
-            faults.append(row.fault("acd_epithelium_mm", f"less the cornea leaves a chamber of {depth:.2f} mm; a depth "
-                                                         "without the cornea goes into acd_endothelium_mm"))
+            faults.append(
+                row.fault(
+                    "acd_epithelium_mm",
+                    f"less the cornea leaves a chamber of {depth:.2f} mm; a depth "
+                    "without the cornea goes into acd_endothelium_mm",
+                )
+            )
     return faults
 
 
@@ -177,6 +216,9 @@ def _standing(row: Row, definition: dict, side: str, notes: list[str]) -> list[F
     try:
         parts, given_way = solve_parts(complete(definition, side)[0])
     except BadInput as error:
-        return [Fault(f"row {row.number}", f"makes no eye: {fault.key} {fault.message}", row.line) for fault in error.faults]
+        return [
+            Fault(f"row {row.number}", f"makes no eye: {fault.key} {fault.message}", row.line)
+            for fault in error.faults
+        ]
     notes += [*parts.cornea.notes, *given_way]
     return []

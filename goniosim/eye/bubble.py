@@ -17,20 +17,28 @@ LEVEL = "bubble-level"
 
 
 def level_face(cornea: Cornea, vertical: np.ndarray, height_mm: float) -> Face:
-    """The level under a bubble. vertical : the room's, unit vector in the eye frame; height_mm : see the keys."""
+    """The level under a bubble. vertical : the room's, unit vector in the eye frame; height_mm : see the
+    keys.
+    """
     clock = clock_of(vertical[0], vertical[1])
     rotation = np.eye(3) if clock is None else lean_toward(clock, from_axis_deg(vertical))
     top = highest_mm(cornea, vertical)
-    return Face(LEVEL, Plane(), rotation=rotation, origin_mm=(top - height_mm) * np.asarray(vertical, dtype=float))
+    return Face(
+        LEVEL, Plane(), rotation=rotation, origin_mm=(top - height_mm) * np.asarray(vertical, dtype=float)
+    )
 
 
 def highest_mm(cornea: Cornea, vertical: np.ndarray) -> float:
-    """Height along the room's vertical of the highest point of the cornea's back, in the vertical's own meridian."""
+    """Height along the room's vertical of the highest point of the cornea's back, in the vertical's own
+    meridian.
+    """
     clock = clock_of(vertical[0], vertical[1])
     outward, up = math.hypot(vertical[0], vertical[1]), vertical[2]
     if clock is None:
         return -cornea.thickness_mm * up
-    back = meridian_at(cornea.back, -cornea.thickness_mm, cornea.spur_r_mm, from_steep_deg(cornea.back, clock))
+    back = meridian_at(
+        cornea.back, -cornea.thickness_mm, cornea.spur_r_mm, from_steep_deg(cornea.back, clock)
+    )
 
     def rise(r: float) -> float:
         return outward + up * float(back.slope(r))

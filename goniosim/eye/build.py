@@ -24,11 +24,11 @@ ROOM_UP = (0.0, 0.0, 1.0)
 class BuiltEye:
     """An eye ready to be traced.
 
-    faces : name -> Face, in the eye frame. bodies : list of Body. anatomy : where structures lie.
-    report : {'put_in': ..., 'measured_on_model': ...}, what was stated and what OCT would measure (`oct.py`).
-    notes : what had to give way. structures : bands of the angle, from the cornea to the iris.
-    ring_structure : the band that the clock ring follows. inlet : face through which a line enters the chamber.
-    inner_sides : (face, side of the chamber) for every face that closes it.
+    faces : name -> Face, in the eye frame. bodies : list of Body. anatomy : where structures lie. report :
+    {'put_in': ..., 'measured_on_model': ...}, what was stated and what OCT would measure (`oct.py`). notes
+    : what had to give way. structures : bands of the angle, from the cornea to the iris. ring_structure :
+    the band that the clock ring follows. inlet : face through which a line enters the chamber. inner_sides
+    : (face, side of the chamber) for every face that closes it.
     """
 
     faces: dict[str, Face]
@@ -54,12 +54,26 @@ def build(mapping: Mapping[str, Any], side: str, room_vertical_in_eye=ROOM_UP) -
     angle = mapping["angle"]
     heights = heights_by_clock(angle["meshwork_height_um"], side)
     lining = Lining(parts.cornea.mean_back(), parts.recess, parts.iris)
-    bands = Bands(heights, angle["spur_width_um"] / 1000.0, angle["pigmented_share"], angle["schwalbe_width_um"] / 1000.0,
-                  float(lining.root_mm), float(lining.margin_mm))
-    anatomy = Anatomy(side, parts.cornea, lining, bands, angle["canal_width_um"] / 1000.0, angle["canal_depth_um"] / 1000.0)
+    bands = Bands(
+        heights,
+        angle["spur_width_um"] / 1000.0,
+        angle["pigmented_share"],
+        angle["schwalbe_width_um"] / 1000.0,
+        float(lining.root_mm),
+        float(lining.margin_mm),
+    )
+    anatomy = Anatomy(
+        side, parts.cornea, lining, bands, angle["canal_width_um"] / 1000.0, angle["canal_depth_um"] / 1000.0
+    )
     faces = eye_faces(mapping, parts, max(heights), np.asarray(room_vertical_in_eye, dtype=float))
-    return BuiltEye(faces, eye_bodies(mapping, parts), anatomy, report_of(mapping, faces, anatomy),
-                    [*parts.cornea.notes, *iris_notes], chamber_sides(parts))
+    return BuiltEye(
+        faces,
+        eye_bodies(mapping, parts),
+        anatomy,
+        report_of(mapping, faces, anatomy),
+        [*parts.cornea.notes, *iris_notes],
+        chamber_sides(parts),
+    )
 
 
 def solve_parts(mapping: Mapping[str, Any]) -> tuple[Parts, list[str]]:

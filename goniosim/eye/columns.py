@@ -11,8 +11,9 @@ from ..units import KERATOMETER_INDEX, radius_mm_from_keratometry_d
 
 @dataclass(frozen=True)
 class Column:
-    """One column of numbers. low, high : what it can hold, inclusive. twin : the column of the other unit, whose
-    values are often put here by mistake. keys : dotted keys of the eye file that it measures."""
+    """One column of numbers. low, high : what it can hold, inclusive. twin : the column of the other unit,
+    whose values are often put here by mistake. keys : dotted keys of the eye file that it measures.
+    """
 
     name: str
     unit: str
@@ -29,29 +30,74 @@ POWER, RADIUS = (28.0, 70.0), (5.0, 11.5)
 _COLUMNS = (
     Column("k1_d", "D", *POWER, "flat keratometry reading", ("cornea.front",), "r1_mm"),
     Column("k2_d", "D", *POWER, "steep keratometry reading", ("cornea.front",), "r2_mm"),
-    Column("k_mean_d", "D", *POWER, "mean keratometry reading, for a round cornea", ("cornea.front",), "r_mean_mm"),
-    Column("k_axis_deg", "deg", 0.0, 180.0, "meridian of the steep reading", ("cornea.front.steep_axis_deg",)),
+    Column(
+        "k_mean_d",
+        "D",
+        *POWER,
+        "mean keratometry reading, for a round cornea",
+        ("cornea.front",),
+        "r_mean_mm",
+    ),
+    Column(
+        "k_axis_deg", "deg", 0.0, 180.0, "meridian of the steep reading", ("cornea.front.steep_axis_deg",)
+    ),
     Column("r1_mm", "mm", *RADIUS, "flat front radius", ("cornea.front",), "k1_d"),
     Column("r2_mm", "mm", *RADIUS, "steep front radius", ("cornea.front",), "k2_d"),
-    Column("r_mean_mm", "mm", *RADIUS, "mean front radius, for a round cornea", ("cornea.front",), "k_mean_d"),
+    Column(
+        "r_mean_mm", "mm", *RADIUS, "mean front radius, for a round cornea", ("cornea.front",), "k_mean_d"
+    ),
     Column("front_q", "", -2.0, 2.0, "asphericity of the front", ("cornea.front.q",)),
     Column("back_radius_mm", "mm", 4.0, 10.5, "back radius", ("cornea.back.radius_mm",)),
     Column("back_q", "", -2.0, 2.0, "asphericity of the back", ("cornea.back.q",)),
     Column("cct_um", "um", 250.0, 1000.0, "central corneal thickness", ("cornea.thickness_um",)),
-    Column("limbal_slope_deg", "deg", 15.0, 60.0, "slope of the outer surface 6.6 mm from the axis",
-           ("cornea.limbal_slope_deg",)),
-    Column("acd_epithelium_mm", "mm", 1.3, 7.5, "chamber depth with the cornea: epithelium to lens",
-           ("chamber.depth_mm",)),
-    Column("acd_endothelium_mm", "mm", 1.0, 6.5, "chamber depth without the cornea: endothelium to lens",
-           ("chamber.depth_mm",)),
+    Column(
+        "limbal_slope_deg",
+        "deg",
+        15.0,
+        60.0,
+        "slope of the outer surface 6.6 mm from the axis",
+        ("cornea.limbal_slope_deg",),
+    ),
+    Column(
+        "acd_epithelium_mm",
+        "mm",
+        1.3,
+        7.5,
+        "chamber depth with the cornea: epithelium to lens",
+        ("chamber.depth_mm",),
+    ),
+    Column(
+        "acd_endothelium_mm",
+        "mm",
+        1.0,
+        6.5,
+        "chamber depth without the cornea: endothelium to lens",
+        ("chamber.depth_mm",),
+    ),
     Column("width_mm", "mm", 9.0, 15.0, "chamber width, spur to spur", ("chamber.width_mm",)),
     Column("wtw_mm", "mm", 9.0, 15.0, "white to white, taken as the chamber width", ("chamber.width_mm",)),
-    Column("vault_mm", "mm", -3.0, 2.0, "lens vault: lens pole ahead of the spur plane", ("chamber.vault_mm",)),
+    Column(
+        "vault_mm", "mm", -3.0, 2.0, "lens vault: lens pole ahead of the spur plane", ("chamber.vault_mm",)
+    ),
     Column("vault_um", "um", -3000.0, 2000.0, "lens vault", ("chamber.vault_mm",)),
     Column("angle_width_deg", "deg", 1.0, 80.0, "trabecular-iris angle at 500 um", ("angle.width_deg",)),
     Column("aod500_mm", "mm", 0.01, 1.5, "angle opening distance at 500 um", ("angle.aod500_mm",)),
-    Column("meshwork_height_um", "um", 200.0, 1400.0, "spur to Schwalbe's line, all round", ("angle.meshwork_height_um",)),
-    Column("iris_thickness_um", "um", 100.0, 1000.0, "iris thickness 750 um from the spur", ("iris.thickness_um",)),
+    Column(
+        "meshwork_height_um",
+        "um",
+        200.0,
+        1400.0,
+        "spur to Schwalbe's line, all round",
+        ("angle.meshwork_height_um",),
+    ),
+    Column(
+        "iris_thickness_um",
+        "um",
+        100.0,
+        1000.0,
+        "iris thickness 750 um from the spur",
+        ("iris.thickness_um",),
+    ),
     Column("iris_bow_mm", "mm", -0.8, 1.2, "iris bow", ("iris.bow_mm",)),
     Column("pupil_mm", "mm", 0.8, 8.5, "pupil", ("iris.pupil_mm",)),
     Column("lens_thickness_mm", "mm", 0.2, 7.0, "lens thickness", ("lens.thickness_mm",)),
@@ -60,14 +106,17 @@ _COLUMNS = (
 COLUMNS = {column.name: column for column in _COLUMNS}
 TEXT_COLUMNS = {
     SIDE_COLUMN: "right, left, OD or OS",
-    LABEL_COLUMN: "name of the eye file, in small letters, digits and hyphens; eye-01, eye-02 ... where left out",
+    LABEL_COLUMN: "name of the eye file: small letters, digits and hyphens; eye-01 ... where left out",
     LENS_COLUMN: "natural, artificial or none; natural where left out",
 }
 KNOWN = (*TEXT_COLUMNS, *COLUMNS)
 
-PERSONAL = frozenset("""name names surname forename firstname lastname givenname familyname fullname initials dob birth
-birthday birthdate born patient patientid patientname person id mrn chart ssn nhs insurance passport address street city
-town zip postcode postal phone telephone tel mobile fax email mail social security hospital record""".split())
+PERSONAL = frozenset(
+    """name names surname forename firstname lastname givenname familyname fullname initials dob birth
+    birthday birthdate dateofbirth born patient patientid patientname person id mrn chart ssn
+    nhs insurance passport address street city town zip postcode postal phone telephone tel
+    mobile fax email mail social security hospital record""".split()
+)
 """A column with one of these words in its name may identify a person."""
 
 _NAME = re.compile(r"[a-z0-9]+(?:-[a-z0-9]+)*")
@@ -111,7 +160,8 @@ def _mistaken(column: Column, value: float) -> str:
         return f". This looks like a radius: {value:g} mm is {power:.2f} D; its column is {column.twin}"
     if column.twin and column.unit == "mm" and POWER[0] <= value <= POWER[1]:
         radius = radius_mm_from_keratometry_d(value)
-        return f". This looks like dioptres: {value:g} D is a radius of {radius:.2f} mm; its column is {column.twin}"
+        seems = f"{value:g} D is a radius of {radius:.2f} mm"
+        return f". This looks like dioptres: {seems}; its column is {column.twin}"
     if column.unit == "um" and column.low <= 1000.0 * value <= column.high:
         return f". This looks like mm: {value:g} mm is {1000.0 * value:g} um"
     if column.unit == "mm" and column.low <= value / 1000.0 <= column.high:

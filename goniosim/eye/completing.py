@@ -17,8 +17,22 @@ NATURAL_VAULT_MM = (0.0, 1.2)
 MESHWORK_UM = {"nasal": 712.0, "temporal": 724.0, "superior": 793.0, "inferior": 889.0}
 WIDTH_DEG, CILIARY_BAND_MM = 35.0, 0.18
 BY_LENS = {
-    "natural": {"depth": 3.0, "front": 10.3, "back": 5.66, "thickness": 4.0, "radius": 4.6, "medium": "lens-equivalent"},
-    "artificial": {"depth": 4.2, "front": 15.4, "back": 15.4, "thickness": 0.7, "radius": 3.0, "medium": "pmma"},
+    "natural": {
+        "depth": 3.0,
+        "front": 10.3,
+        "back": 5.66,
+        "thickness": 4.0,
+        "radius": 4.6,
+        "medium": "lens-equivalent",
+    },
+    "artificial": {
+        "depth": 4.2,
+        "front": 15.4,
+        "back": 15.4,
+        "thickness": 0.7,
+        "radius": 3.0,
+        "medium": "pmma",
+    },
     "none": {"depth": 4.2, "front": None, "back": None, "thickness": None, "radius": None, "medium": None},
 }
 TORIC_KEYS, ROUND_KEYS = ("flat_mm", "steep_mm", "steep_axis_deg"), ("radius_mm",)
@@ -46,13 +60,19 @@ def complete(mapping: Mapping[str, Any], side: str) -> tuple[dict, set[str], lis
 def with_measured(definition: Mapping[str, Any], measured: Mapping[str, Any] | None) -> dict:
     """An eye's definition with a patient's measurements laid over it, key by key.
 
-    Where the measurements give a surface in the other form (round or toric), the definition's form goes; where
-    they give two of angle width, AOD500 and ciliary band, the third goes.
+    Where the measurements give a surface in the other form (round or toric), the definition's form goes;
+    where they give two of angle width, AOD500 and ciliary band, the third goes.
     """
     merged = _laid_over(definition, measured or {})
     for surface in ("front", "back"):
         given = ((measured or {}).get("cornea") or {}).get(surface) or {}
-        other = ROUND_KEYS if any(key in given for key in TORIC_KEYS) else TORIC_KEYS if "radius_mm" in given else ()
+        other = (
+            ROUND_KEYS
+            if any(key in given for key in TORIC_KEYS)
+            else TORIC_KEYS
+            if "radius_mm" in given
+            else ()
+        )
         for key in other:
             merged["cornea"][surface].pop(key, None)
     trio = [key for key in ANGLE_TRIO if ((measured or {}).get("angle") or {}).get(key) is not None]

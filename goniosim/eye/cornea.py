@@ -66,11 +66,16 @@ def cornea_of(eye: Mapping) -> Cornea:
         built = Cornea(front, back, thickness, width / 2, depth, ())
     else:
         depth, width, notes = agreed_spur(principal(cornea["back"]), chamber)
-        front = CornealSurface(**principal(cornea["front"]), join_mm=JOIN_MM, r_max_mm=EYEBALL_MM,
-                               slope_deg_at=(cornea["limbal_slope_deg"], SLOPE_RADIUS_MM),
-                               straight_beyond_mm=SLOPE_RADIUS_MM)
-        back = CornealSurface(**principal(cornea["back"]), join_mm=JOIN_MM, through=(width / 2, depth),
-                              r_max_mm=width / 2)
+        front = CornealSurface(
+            **principal(cornea["front"]),
+            join_mm=JOIN_MM,
+            r_max_mm=EYEBALL_MM,
+            slope_deg_at=(cornea["limbal_slope_deg"], SLOPE_RADIUS_MM),
+            straight_beyond_mm=SLOPE_RADIUS_MM,
+        )
+        back = CornealSurface(
+            **principal(cornea["back"]), join_mm=JOIN_MM, through=(width / 2, depth), r_max_mm=width / 2
+        )
         built = Cornea(front, back, thickness, width / 2, depth, notes)
     _check_thickness(built)
     return built
@@ -79,8 +84,12 @@ def cornea_of(eye: Mapping) -> Cornea:
 def principal(surface: Mapping) -> dict:
     """Principal radii, axis and asphericity of a corneal surface given in either form."""
     if surface.get("radius_mm") is not None:
-        return {"flat_mm": surface["radius_mm"], "steep_mm": surface["radius_mm"], "steep_axis_deg": 90.0,
-                "q": surface["q"]}
+        return {
+            "flat_mm": surface["radius_mm"],
+            "steep_mm": surface["radius_mm"],
+            "steep_axis_deg": 90.0,
+            "q": surface["q"],
+        }
     return {key: surface[key] for key in ("flat_mm", "steep_mm", "steep_axis_deg", "q")}
 
 
@@ -92,19 +101,23 @@ def agreed_spur(back: Mapping, chamber: Mapping) -> tuple[float, float, tuple[st
     """
     width, depth = chamber["width_mm"], chamber["depth_mm"] + chamber["vault_mm"]
     slope = spur_slope_deg(back, width, depth)
-    low, high = SPUR_SLOPE_DEG
-    if low <= slope <= high:
+    if _believable(slope):
         return depth, width, ()
-    wanted = low if slope < low else high
-    used = depth_for_slope(back, width, wanted)
-    notes = [f"depth, vault and width contradict each other (the wall at the spur would slope {slope:.0f} deg): "]
-    if not SPUR_DEPTH_MM[0] <= used <= SPUR_DEPTH_MM[1]:
-        used = min(max(used, SPUR_DEPTH_MM[0]), SPUR_DEPTH_MM[1])
+    wanted = SPUR_SLOPE_DEG[0] if slope < SPUR_SLOPE_DEG[0] else SPUR_SLOPE_DEG[1]
+    used = min(max(depth_for_slope(back, width, wanted), SPUR_DEPTH_MM[0]), SPUR_DEPTH_MM[1])
+    note = (
+        f"depth, vault and width contradict each other (the wall at the spur would slope {slope:.0f} deg): "
+        f"a vault of "
+        f"{used - chamber['depth_mm']:.3f} mm is used instead of {chamber['vault_mm']:g} mm"
+    )
+    if not _believable(spur_slope_deg(back, width, used)):
         width = _width_for(back, used, wanted)
-    notes[0] += f"a vault of {used - chamber['depth_mm']:.3f} mm is used instead of {chamber['vault_mm']:g} mm"
-    if width != chamber["width_mm"]:
-        notes[0] += f", and a width of {width:.2f} mm instead of {chamber['width_mm']:g} mm"
-    return used, width, tuple(notes)
+        note += f", and a width of {width:.2f} mm instead of {chamber['width_mm']:g} mm"
+    return used, width, (note,)
+
+
+def _believable(slope_deg: float) -> bool:
+    return SPUR_SLOPE_DEG[0] - 1e-9 <= slope_deg <= SPUR_SLOPE_DEG[1] + 1e-9
 
 
 def _cubic_base(back: Mapping) -> tuple[float, float, float]:
@@ -132,6 +145,7 @@ def depth_for_slope(back: Mapping, width_mm: float, slope_deg: float) -> float:
 
 def _width_for(back: Mapping, depth_mm: float, slope_deg: float) -> float:
     """Width at which the spur's slope is as wanted for a depth; the end of the range where none is."""
+
     def miss(width: float) -> float:
         return spur_slope_deg(back, width, depth_mm) - slope_deg
 
@@ -143,8 +157,16 @@ def _width_for(back: Mapping, depth_mm: float, slope_deg: float) -> float:
 
 def _check_reaches(back: CornealSurface, spur_r: float) -> None:
     if spur_r >= 0.999 * back.equator_mm():
-        raise BadInput("eye", [Fault("chamber.width_mm", f"is wider than the back of the cornea: with periphery: conic "
-                                     f"it ends {2 * back.equator_mm():.2f} mm across")])
+        raise BadInput(
+            "eye",
+            [
+                Fault(
+                    "chamber.width_mm",
+                    f"is wider than the back of the cornea: with periphery: conic "
+                    f"it ends {2 * back.equator_mm():.2f} mm across",
+                )
+            ],
+        )
 
 
 def _check_thickness(cornea: Cornea) -> None:
@@ -154,6 +176,14 @@ def _check_thickness(cornea: Cornea) -> None:
     x, y = np.outer(np.cos(angles), r), np.outer(np.sin(angles), r)
     along_axis = cornea.front.sag(x, y) - cornea.back.sag(x, y) + cornea.thickness_mm
     if along_axis.min() < LEAST_THICKNESS_MM:
-        raise BadInput("eye", [Fault("cornea", f"front and back come within {1000 * along_axis.min():.0f} um of each "
-                                     f"other; the back must lie at least {1000 * LEAST_THICKNESS_MM:.0f} um behind")],
-                       "Check radii, asphericities, chamber depth, vault and width.")
+        raise BadInput(
+            "eye",
+            [
+                Fault(
+                    "cornea",
+                    f"front and back come within {1000 * along_axis.min():.0f} um of each "
+                    f"other; the back must lie at least {1000 * LEAST_THICKNESS_MM:.0f} um behind",
+                )
+            ],
+            "Check radii, asphericities, chamber depth, vault and width.",
+        )

@@ -14,10 +14,14 @@ from .keys import EYE_KEYS
 
 def eye_text(eye: TableEye) -> str:
     """An eye file's text: what was measured; everything else is left to the rules that complete an eye."""
-    lines = [f"goniosim: eye\nschema: 1\nname: {eye.name}",
-             f"title: {eye.side.capitalize()} eye, row {eye.row} of a biometry table",
-             "source: measured, from a biometry table; what is left out is filled by rules"]
-    lines += [f"{key.name}: {_flow(eye.definition[key.name])}" for key in EYE_KEYS if key.name in eye.definition]
+    lines = [
+        f"goniosim: eye\nschema: 1\nname: {eye.name}",
+        f"title: {eye.side.capitalize()} eye, row {eye.row} of a biometry table",
+        "source: measured, from a biometry table; what is left out is filled by rules",
+    ]
+    lines += [
+        f"{key.name}: {_flow(eye.definition[key.name])}" for key in EYE_KEYS if key.name in eye.definition
+    ]
     if eye.measured:
         lines.append(f"measured: [{', '.join(eye.measured)}]")
     return "\n".join(lines) + "\n"
@@ -39,8 +43,11 @@ def write_eyes(eyes: Sequence[TableEye], folder: Path, replace: bool = False) ->
     targets = [folder / f"{eye.name}.yaml" for eye in eyes]
     in_the_way = [target.name for target in targets if target.exists() and not (replace and target.is_file())]
     if in_the_way:
-        raise Misuse(f"{folder} holds {', '.join(in_the_way[:5])}{' and others' if len(in_the_way) > 5 else ''} already; "
-                     "nothing was written. Name another folder with --into, or use --replace")
+        others = " and others" if len(in_the_way) > 5 else ""
+        raise Misuse(
+            f"{folder} holds {', '.join(in_the_way[:5])}{others} already; nothing was written. "
+            "Name another folder with --into, or use --replace"
+        )
     made = not folder.exists()
     written: list[Path] = []
     try:

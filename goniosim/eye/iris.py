@@ -4,14 +4,15 @@ Front, with u from 0 at the root (radius r_R) to 1 at the margin (r_P), L = r_R 
 
     z = chord(u) + L u (1 - u) (A (1 - u) + B u).
 
-The two arms of the trabecular-iris angle meet at the root; one runs through the wall W 500 um ahead of the spur, the
-other through the iris where it faces W squarely. Both the angle width and AOD500 thus name the point I of the
-iris on W's perpendicular, and the front passes through I for one A to each B. B then sets the bow, measured
-as OCT does: the greatest height of the back (pigment epithelium) above the chord of its ends, square to the chord.
-Back: the front less a thickness along the axis, linear in r: half the stated one at the margin, and the stated
-one where the iris faces the wall 750 um ahead of the spur.
+The two arms of the trabecular-iris angle meet at the root; one runs through the wall W 500 um ahead of the
+spur, the other through the iris where it faces W squarely. Both the angle width and AOD500 thus name the
+point I of the iris on W's perpendicular, and the front passes through I for one A to each B. B then sets
+the bow, measured as OCT does: the greatest height of the back (pigment epithelium) above the chord of its
+ends, square to the chord. Back: the front less a thickness along the axis, linear in r: half the stated one
+at the margin, and the stated one where the iris faces the wall 750 um ahead of the spur.
 
-Where angle and bow clash, believable shapes (A and B within limits) come first: the bow gives way, then the insertion.
+Where angle and bow clash, believable shapes (A and B within limits) come first: the bow gives way, then the
+insertion.
 """
 
 from __future__ import annotations
@@ -55,8 +56,14 @@ class Iris:
         (r_root, z_root), (r_margin, z_margin) = self.root, self.margin
         length = r_root - r_margin
         # With w = 1 - u = v / L: z = z_P + (z_R - z_P) w + L (w - w^2) (B + (A - B) w).
-        in_w = np.array([z_margin, z_root - z_margin + length * self.b, length * (self.a - 2.0 * self.b),
-                         length * (self.b - self.a)])
+        in_w = np.array(
+            [
+                z_margin,
+                z_root - z_margin + length * self.b,
+                length * (self.a - 2.0 * self.b),
+                length * (self.b - self.a),
+            ]
+        )
         return in_w / length ** np.arange(4)
 
     @cached_property
@@ -77,7 +84,9 @@ class Iris:
         return float(np.polyval(self.back[::-1], self.root[0] - self.margin[0]))
 
     def bow_mm(self) -> float:
-        """Greatest height of the back above the chord of its ends; where nowhere above it, the greatest depth."""
+        """Greatest height of the back above the chord of its ends; where nowhere above it, the greatest
+        depth.
+        """
         low, high = self.bow_extremes()
         return high if high > BOW_TOLERANCE_MM else low
 
@@ -106,8 +115,11 @@ def facing_distance(iris: Iris, wall: WallPoint) -> float:
     # Substitute r + t n_r into the cubic: a polynomial in t.
     t_line, z_line = np.poly1d([n_r, r - iris.margin[0]]), np.poly1d([n_z, z])
     gap = z_line - np.polyval(np.poly1d(iris.front[::-1]), t_line)
-    found = [t.real for t in gap.roots if abs(t.imag) < 1e-9 and t.real > 0.0
-             and iris.margin[0] <= r + t.real * n_r <= iris.root[0] + 1e-9]
+    found = [
+        t.real
+        for t in gap.roots
+        if abs(t.imag) < 1e-9 and t.real > 0.0 and iris.margin[0] <= r + t.real * n_r <= iris.root[0] + 1e-9
+    ]
     return min(found, default=math.inf)
 
 
@@ -160,8 +172,10 @@ class _Solver:
         if miss(low) * miss(high) <= 0.0:
             return find_root(miss, low, high)
         nearest = min((low, high), key=lambda band: abs(miss(band)))
-        self.notes.append(f"an AOD500 of {self.aod:g} mm and an angle of {math.degrees(self.width):g} deg contradict "
-                          f"each other: no insertion gives both; the angle is held, with a ciliary band of {nearest:g} mm")
+        self.notes.append(
+            f"an AOD500 of {self.aod:g} mm and an angle of {math.degrees(self.width):g} deg contradict "
+            f"each other: no insertion gives both; the angle is held, with a ciliary band of {nearest:g} mm"
+        )
         self.aod = None
         return nearest
 
@@ -182,8 +196,16 @@ class _Solver:
         length = root[0] - margin[0]
         u = (root[0] - facing[0]) / length
         if not 0.0 < u < 1.0:
-            raise BadInput("eye", [Fault("angle", "is so wide that the iris would have to reach beyond its own ends; "
-                                         "use a smaller width_deg or aod500_mm")])
+            raise BadInput(
+                "eye",
+                [
+                    Fault(
+                        "angle",
+                        "is so wide that the iris would have to reach beyond its own ends; "
+                        "use a smaller width_deg or aod500_mm",
+                    )
+                ],
+            )
         above = facing[1] - (root[1] + (margin[1] - root[1]) * u)
         a = (above / (length * u * (1.0 - u)) - b * u) / (1.0 - u)
         return Iris(root, margin, float(a), float(b), self.thickness, self.wall_750)
@@ -207,7 +229,8 @@ class _Solver:
         return 0.0 if self._shape(recess, 0.0).a <= 0.0 else BELIEVABLE_B[0]
 
     def _insert_farther_back(self, recess: Recess) -> tuple[Recess, float]:
-        """Move the root back until A is believable: a wider angle by insertion instead of by a hollow iris."""
+        """Move the root back until A is believable: wider by insertion, not by a hollow iris."""
+
         def miss(band: float) -> float:
             moved = recess_of(self.cornea, band)
             return self._shape(moved, self._agreed_b(moved)).a - LEAST_A
@@ -215,14 +238,19 @@ class _Solver:
         low, high = recess.band_mm, BAND_LIMITS_MM[1]
         band = find_root(miss, low, high) if miss(high) > 0.0 else high
         moved = recess_of(self.cornea, band)
-        self.notes.append(f"so wide an angle would hollow the iris beyond belief: its root is put {band:.2f} mm behind the "
-                          f"spur instead of {low:.2f} mm")
+        self.notes.append(
+            f"so wide an angle would hollow the iris beyond belief: its root is put {band:.2f} mm behind the "
+            f"spur instead of {low:.2f} mm"
+        )
         return moved, self._agreed_b(moved)
 
     def _note_bow(self, iris: Iris) -> None:
         got = iris.bow_mm()
         if abs(got - self.bow) > 1e-6:
-            self.notes.append(f"a bow of {self.bow:g} mm does not go with this angle: {got:.3f} mm is used (the bow gives way)")
+            self.notes.append(
+                f"a bow of {self.bow:g} mm does not go with this angle: {got:.3f} mm is used "
+                "(the bow gives way)"
+            )
 
 
 def angle_between(one: np.ndarray, other: np.ndarray) -> float:
@@ -235,5 +263,8 @@ def _check_clear(iris: Iris, cornea: Cornea) -> None:
     meridian = cornea.mean_back()
     r = np.linspace(iris.margin[0], min(iris.root[0], cornea.spur_r_mm), 200)[:-1]
     if np.any(meridian.height(r) - iris.height(r) <= 0.0):
-        raise BadInput("eye", [Fault("iris", "touches the cornea: this bow, angle, depth and pupil leave no chamber")],
-                       "Use a smaller bow, a wider angle or a deeper chamber.")
+        raise BadInput(
+            "eye",
+            [Fault("iris", "touches the cornea: this bow, angle, depth and pupil leave no chamber")],
+            "Use a smaller bow, a wider angle or a deeper chamber.",
+        )

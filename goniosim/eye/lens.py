@@ -69,8 +69,16 @@ def margin_back_z(eye: Mapping, cornea: Cornea, lens: EyeLens) -> float:
     on_lens = lens.front_z_mm
     if lens.present:
         if pupil_r >= lens.radius_mm and eye["lens"]["kind"] == "natural":
-            raise BadInput("eye", [Fault("iris.pupil_mm", f"must be less than the lens's diameter, "
-                                         f"{2 * lens.radius_mm:.2f}; got {2 * pupil_r:g}")])
+            raise BadInput(
+                "eye",
+                [
+                    Fault(
+                        "iris.pupil_mm",
+                        f"must be less than the lens's diameter, "
+                        f"{2 * lens.radius_mm:.2f}; got {2 * pupil_r:g}",
+                    )
+                ],
+            )
         on_lens -= conic_drop(lens.front_radius_mm, lens.front_q, min(pupil_r, lens.radius_mm))
     if eye["lens"]["kind"] == "natural":
         return on_lens

@@ -1,8 +1,8 @@
 """The limbus: the cone where clear cornea ends and sclera begins.
 
-It runs from the Schwalbe ring of the tallest meshwork on the back surface to the ring of the spur's radius on
-the front one: the posterior limbal border overlies the spur, the middle of the limbus Schwalbe's line (Mohan, "Wound
-construction").
+It runs from the Schwalbe ring of the tallest meshwork on the back surface to the ring of the spur's radius
+on the front one: the posterior limbal border overlies the spur, the middle of the limbus Schwalbe's line
+(Mohan, "Wound construction").
 """
 
 from __future__ import annotations
@@ -38,12 +38,16 @@ def limbus_face(cornea: Cornea, tallest_mm: float) -> Face:
     inner_z, outer_z = float(inner[1]), float(outer[1])
     half_angle = math.degrees(math.atan2(outer_r - inner_r, outer_z - inner_z))
     # On a toric cornea both rings wave a little: the cone is long enough for every meridian.
-    cone = LimbalCone(inner_r, half_angle, float(inner.min()) - inner_z - MARGIN_MM,
-                      float(outer.max()) - inner_z + MARGIN_MM)
+    cone = LimbalCone(
+        inner_r,
+        half_angle,
+        float(inner.min()) - inner_z - MARGIN_MM,
+        float(outer.max()) - inner_z + MARGIN_MM,
+    )
     return Face("limbus", cone, origin_mm=np.array([0.0, 0.0, inner_z]), finish="opaque", beyond="opaque")
 
 
 def ring_heights(surface: CornealSurface, r: float) -> np.ndarray:
-    """Heights of a surface at a radius in its steep meridian, halfway to the flat one, and in the flat one."""
+    """Heights of a surface at a radius: in its steep meridian, halfway to the flat one, in the flat one."""
     angles = np.radians(surface.steep_axis_deg + np.array([0.0, 45.0, 90.0]))
     return surface.sag(r * np.cos(angles), r * np.sin(angles))

@@ -1,7 +1,8 @@
 """The inner lining of the eye in one meridian: iris front, ciliary face, wall and cornea as one curve.
 
-Its parameter is the arc length s from the scleral spur, in mm: positive along the wall toward the cornea's apex,
-negative along the ciliary face to the iris root and on along the front of the iris to the pupil margin.
+Its parameter is the arc length s from the scleral spur, in mm: positive along the wall toward the cornea's
+apex, negative along the ciliary face to the iris root and on along the front of the iris to the pupil
+margin.
 """
 
 from __future__ import annotations
@@ -70,8 +71,11 @@ class Lining:
             raise Misuse(f"arc must be at most {self.apex_mm:g} mm, the cornea's apex; got {arc:g}")
         r = self.wall.radius_at(arc)
         slope = float(self.wall.slope(r))
-        return (np.array([r, float(self.wall.height(r))]), np.array([-1.0, -slope]) / math.hypot(1.0, slope),
-                inward(slope))
+        return (
+            np.array([r, float(self.wall.height(r))]),
+            np.array([-1.0, -slope]) / math.hypot(1.0, slope),
+            inward(slope),
+        )
 
     def _on_arc(self, arc: float):
         angle = self.recess.spur_angle + arc / ARC_RADIUS_MM
@@ -85,10 +89,16 @@ class Lining:
         r = radius_at_arc(iris.slope, iris.root[0], self.root_mm - arc, iris.margin[0], iris.root[0])
         slope = float(iris.slope(r))
         # Anterior along the lining is outward on the iris, toward its root.
-        return np.array([r, float(iris.height(r))]), np.array([1.0, slope]) / math.hypot(1.0, slope), -inward(slope)
+        return (
+            np.array([r, float(iris.height(r))]),
+            np.array([1.0, slope]) / math.hypot(1.0, slope),
+            -inward(slope),
+        )
 
     def arc_of(self, r: float, z: float) -> float:
-        """Arc of the lining's point that is nearest to (r, z) by height on wall and iris, by distance on the arc."""
+        """Arc of the lining's point that is nearest to (r, z) by height on wall and iris, by distance on
+        the arc.
+        """
         off_wall = abs(z - float(self.wall.height(min(r, self.wall.spur_r))))
         dr, dz = r - self.recess.centre[0], z - self.recess.centre[1]
         angle = math.atan2(dz, dr)

@@ -10,4 +10,12 @@ from .completing import chamber_medium, complete, media_named, with_measured
 from .keys import EYE_KEYS, QUADRANTS
 from .plausible import eye_faults
 
-__all__ = ["EYE_KEYS", "QUADRANTS", "chamber_medium", "complete", "eye_faults", "media_named", "with_measured"]
+__all__ = [
+    "EYE_KEYS",
+    "QUADRANTS",
+    "chamber_medium",
+    "complete",
+    "eye_faults",
+    "media_named",
+    "with_measured",
+]

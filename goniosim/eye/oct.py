@@ -1,14 +1,15 @@
 """What OCT reports, measured on the built faces by its published definitions.
 
-Definitions (tables of two papers, restated): AOD500/750 = wall-to-iris distance on the perpendicular to the meshwork
-500/750 um from the spur; TISA750 = the area between that line, the perpendicular at the spur, wall and iris; trabecular-iris
-angle = apex in the recess (here the iris root), arms through the 500 um points; chamber depth = endothelium to
-lens; chamber width = spur to spur; lens vault = lens pole above the spur plane; bow = on the pigment epithelium (the
-back of the iris), greatest height above the chord of its ends; meshwork height = spur to Schwalbe's line, along the wall.
+Definitions (tables of two papers, restated): AOD500/750 = wall-to-iris distance on the perpendicular to the
+meshwork 500/750 um from the spur; TISA750 = the area between that line, the perpendicular at the spur, wall
+and iris; trabecular-iris angle = apex in the recess (here the iris root), arms through the 500 um points;
+chamber depth = endothelium to lens; chamber width = spur to spur; lens vault = lens pole above the spur
+plane; bow = on the pigment epithelium (the back of the iris), greatest height above the chord of its ends;
+meshwork height = spur to Schwalbe's line, along the wall.
 
-This reads only the faces (their heights, normals, ends), none of the formulas they were built from. Distances along
-the wall are sums of short chords, crossings are bisected: good to about 1e-8 mm. On a toric cornea the meridian
-halfway between steep and flat is measured.
+This reads only the faces (their heights, normals, ends), none of the formulas they were built from.
+Distances along the wall are sums of short chords, crossings are bisected: good to about 1e-8 mm. On a toric
+cornea the meridian halfway between steep and flat is measured.
 """
 
 from __future__ import annotations
@@ -30,12 +31,18 @@ from .structures import SCHWALBE_LINE
 CHORDS = 3000
 LONGEST_MM = 1.5  # of wall walked inward from the spur
 REACH_MM = 4.0  # of a perpendicular, from the wall to the iris
-QUADRANT_CLOCK = {"superior": 12.0, "inferior": 6.0, "nasal": {"right": 3.0, "left": 9.0},
-                  "temporal": {"right": 9.0, "left": 3.0}}
+QUADRANT_CLOCK = {
+    "superior": 12.0,
+    "inferior": 6.0,
+    "nasal": {"right": 3.0, "left": 9.0},
+    "temporal": {"right": 9.0, "left": 3.0},
+}
 
 
 def report_of(eye: Mapping, faces: Mapping[str, Face], anatomy: Anatomy) -> dict[str, Any]:
-    """{'put_in': what the complete mapping states, 'measured_on_model': the same, measured}. None: not stated."""
+    """{'put_in': what the complete mapping states, 'measured_on_model': the same, measured}. None: not
+    stated.
+    """
     return {"put_in": _put_in(eye), "measured_on_model": measured_on_model(faces, anatomy)}
 
 
@@ -43,11 +50,20 @@ def _put_in(eye: Mapping) -> dict[str, Any]:
     chamber, angle, iris = eye["chamber"], eye["angle"], eye["iris"]
     height = angle["meshwork_height_um"]
     return {
-        "corneal_thickness_um": eye["cornea"]["thickness_um"], "chamber_depth_mm": chamber["depth_mm"],
-        "chamber_width_mm": chamber["width_mm"], "lens_vault_mm": chamber["vault_mm"],
-        "angle_width_deg": angle["width_deg"], "aod500_mm": angle["aod500_mm"], "aod750_mm": None, "tisa750_mm2": None,
-        "meshwork_height_um": dict(height) if isinstance(height, Mapping) else dict.fromkeys(QUADRANTS, height),
-        "iris_bow_mm": iris["bow_mm"], "iris_thickness_um": iris["thickness_um"], "pupil_mm": iris["pupil_mm"],
+        "corneal_thickness_um": eye["cornea"]["thickness_um"],
+        "chamber_depth_mm": chamber["depth_mm"],
+        "chamber_width_mm": chamber["width_mm"],
+        "lens_vault_mm": chamber["vault_mm"],
+        "angle_width_deg": angle["width_deg"],
+        "aod500_mm": angle["aod500_mm"],
+        "aod750_mm": None,
+        "tisa750_mm2": None,
+        "meshwork_height_um": dict(height)
+        if isinstance(height, Mapping)
+        else dict.fromkeys(QUADRANTS, height),
+        "iris_bow_mm": iris["bow_mm"],
+        "iris_thickness_um": iris["thickness_um"],
+        "pupil_mm": iris["pupil_mm"],
     }
 
 
@@ -58,9 +74,14 @@ def measured_on_model(faces: Mapping[str, Face], anatomy: Anatomy) -> dict[str, 
     apex_z, spur = float(faces["cornea-back"].origin_mm[2]), section.spur
     aod_500, aod_750 = section.facing(0.5), section.facing(0.75)
     return {
-        "corneal_thickness_um": -1000.0 * apex_z, "chamber_depth_mm": apex_z - lens_z, "chamber_width_mm": 2.0 * float(spur[0]),
-        "lens_vault_mm": lens_z - float(spur[1]), "angle_width_deg": section.angle_deg(), "aod500_mm": _length(*aod_500),
-        "aod750_mm": _length(*aod_750), "tisa750_mm2": section.space_mm2(0.75),
+        "corneal_thickness_um": -1000.0 * apex_z,
+        "chamber_depth_mm": apex_z - lens_z,
+        "chamber_width_mm": 2.0 * float(spur[0]),
+        "lens_vault_mm": lens_z - float(spur[1]),
+        "angle_width_deg": section.angle_deg(),
+        "aod500_mm": _length(*aod_500),
+        "aod750_mm": _length(*aod_750),
+        "tisa750_mm2": section.space_mm2(0.75),
         "meshwork_height_um": {name: _meshwork_height_um(faces, anatomy, name) for name in QUADRANTS},
         "iris_bow_mm": section.bow_mm(),
         "iris_thickness_um": section.iris_thickness_um(aod_750[1]),
@@ -94,9 +115,14 @@ class Section:
         self.faces, self.toward = faces, clock_direction(clock)
         arc, origin = faces["ciliary-face"].shape, faces["ciliary-face"].origin_mm
         self.spur, self.root = (
-            np.array([arc.ring_radius_mm + arc.arc_radius_mm * math.cos(math.radians(angle)),
-                      origin[2] + arc.arc_radius_mm * math.sin(math.radians(angle))])
-            for angle in (arc.to_deg, arc.from_deg))
+            np.array(
+                [
+                    arc.ring_radius_mm + arc.arc_radius_mm * math.cos(math.radians(angle)),
+                    origin[2] + arc.arc_radius_mm * math.sin(math.radians(angle)),
+                ]
+            )
+            for angle in (arc.to_deg, arc.from_deg)
+        )
         iris = faces["iris-front"].shape.lower()
         self.iris_r = (float(iris.r_min_mm), float(iris.r_max_mm))
 
@@ -154,7 +180,7 @@ class Section:
         return math.degrees(abs(math.atan2(wall[0] * iris[1] - wall[1] * iris[0], wall @ iris)))
 
     def bow_mm(self) -> float:
-        """Greatest height of the iris's back above its chord; where nowhere above, the greatest depth below."""
+        """Greatest height of the iris's back above its chord; where nowhere above, the greatest depth."""
         r = np.linspace(*self.iris_r, CHORDS)
         z = self.height("iris-back", r)
         slope = (z[-1] - z[0]) / (r[-1] - r[0])
@@ -186,8 +212,12 @@ class Section:
 def _interpolated(at: float, x: np.ndarray, y: np.ndarray) -> float:
     """Value of y at x by the cubic through the four nearest samples."""
     i = min(max(int(np.searchsorted(x, at)) - 2, 0), len(x) - 4)
-    return float(sum(y[i + j] * np.prod([(at - x[i + k]) / (x[i + j] - x[i + k]) for k in range(4) if k != j])
-                     for j in range(4)))
+    return float(
+        sum(
+            y[i + j] * np.prod([(at - x[i + k]) / (x[i + j] - x[i + k]) for k in range(4) if k != j])
+            for j in range(4)
+        )
+    )
 
 
 def _bisected(function, low: float, high: float) -> float:
@@ -202,5 +232,5 @@ def _peak(values: np.ndarray) -> float:
     top = int(np.argmax(values))
     if top in (0, len(values) - 1):
         return float(values[top])
-    a, b, c = values[top - 1: top + 2]
+    a, b, c = values[top - 1 : top + 2]
     return float(b - (a - c) ** 2 / (8.0 * (a - 2.0 * b + c))) if a - 2.0 * b + c != 0.0 else float(b)

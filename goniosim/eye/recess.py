@@ -1,7 +1,9 @@
-"""The angle recess: the ciliary face, an arc of 0.5 mm radius tangent to the wall at the spur, to the iris root.
+"""The angle recess: the ciliary face, an arc of 0.5 mm radius tangent to the wall at the spur, to the iris
+root.
 
-All in the (r, z) half plane of the mean meridian. On a toric cornea the wall's slope at the spur differs
-by meridian (by less than a degree per dioptre): wall and arc meet in the same ring there, with that small kink.
+All in the (r, z) half plane of the mean meridian. On a toric cornea the wall's slope at the spur differs by
+meridian (by less than a degree per dioptre): wall and arc meet in the same ring there, with that small
+kink.
 """
 
 from __future__ import annotations

@@ -1,4 +1,6 @@
-"""Read a biometry table, CSV or JSON, into rows of text and numbers; columns that identify a person are left out."""
+"""Read a biometry table, CSV or JSON, into rows of text and numbers; columns that identify a person are
+left out.
+"""
 
 from __future__ import annotations
 
@@ -20,7 +22,9 @@ ADVICE = "Known columns: goniosim eyes columns"
 
 @dataclass(frozen=True)
 class Row:
-    """One eye. number : from 1. cells : column -> text or number, as found. places : column -> (line, column)."""
+    """One eye. number : from 1. cells : column -> text or number, as found. places : column -> (line,
+    column).
+    """
 
     number: int
     cells: dict[str, Any]
@@ -35,8 +39,9 @@ class Row:
 
 @dataclass
 class Table:
-    """rows : eyes in the order of the table. not_read : columns that may identify a person. ignored : unknown columns
-    that were passed over. faults : what is wrong with the table itself."""
+    """rows : eyes in the order of the table. not_read : columns that may identify a person. ignored :
+    unknown columns that were passed over. faults : what is wrong with the table itself.
+    """
 
     rows: list[Row] = field(default_factory=list)
     not_read: list[str] = field(default_factory=list)
@@ -65,8 +70,11 @@ def read_table(path: Path, ignore_unknown: bool = False) -> Table:
     """Read a .json file as JSON, any other as CSV. Raises BadInput where no rows can be had from it."""
     where = str(path)
     text = _text(path, where)
-    table = _from_json(text, where, ignore_unknown) if path.suffix.lower() == ".json" else \
-        _from_csv(text, where, ignore_unknown)
+    table = (
+        _from_json(text, where, ignore_unknown)
+        if path.suffix.lower() == ".json"
+        else _from_csv(text, where, ignore_unknown)
+    )
     if not table.rows and not table.faults:
         raise BadInput(where, [Fault("", "holds no eyes")], ADVICE)
     return table
@@ -95,9 +103,15 @@ def _from_csv(text: str, where: str, ignore_unknown: bool) -> Table:
         header = next(reader, None)
         if not header or not any(cell.strip() for cell in header):
             raise BadInput(where, [Fault("", "is empty; the first line names the columns")], ADVICE)
-        names = [table.takes(cell, ignore_unknown, (1, i + 1)) if cell.strip() else None for i, cell in enumerate(header)]
-        table.faults += [Fault(name, "is given twice", 1, i + 1) for i, name in enumerate(names)
-                         if name is not None and name in names[:i]]
+        names = [
+            table.takes(cell, ignore_unknown, (1, i + 1)) if cell.strip() else None
+            for i, cell in enumerate(header)
+        ]
+        table.faults += [
+            Fault(name, "is given twice", 1, i + 1)
+            for i, name in enumerate(names)
+            if name is not None and name in names[:i]
+        ]
         for line in reader:
             if any(cell.strip() for cell in line):
                 _take_line(table, names, line, reader.line_num)
@@ -109,10 +123,20 @@ def _from_csv(text: str, where: str, ignore_unknown: bool) -> Table:
 def _take_line(table: Table, names: list[str | None], line: list[str], line_number: int) -> None:
     number = len(table.rows) + 1
     if len(line) > len(names):
-        table.faults.append(Fault(f"row {number}", f"has {len(line)} cells; the header names {len(names)} columns. "
-                                  "A decimal comma splits a number: write 7.8, not 7,8", line_number))
-    pairs = [(name, cell.strip(), i + 1) for i, (name, cell) in enumerate(zip(names, line)) if name is not None]
-    cells = {name: cell for name, cell, _ in pairs if cell.lower() not in EMPTY or name == "lens_kind" and cell}
+        table.faults.append(
+            Fault(
+                f"row {number}",
+                f"has {len(line)} cells; the header names {len(names)} columns. "
+                "A decimal comma splits a number: write 7.8, not 7,8",
+                line_number,
+            )
+        )
+    pairs = [
+        (name, cell.strip(), i + 1) for i, (name, cell) in enumerate(zip(names, line)) if name is not None
+    ]
+    cells = {
+        name: cell for name, cell, _ in pairs if cell.lower() not in EMPTY or name == "lens_kind" and cell
+    }
     table.rows.append(Row(number, cells, {name: (line_number, i) for name, _, i in pairs}, line_number))
 
 
@@ -133,12 +157,20 @@ def _from_json(text: str, where: str, ignore_unknown: bool) -> Table:
     try:
         value = json.loads(text, object_pairs_hook=take, parse_constant=str)
     except json.JSONDecodeError as error:
-        raise BadInput(where, [Fault("", f"cannot be read as JSON: {error.msg}", error.lineno, error.colno)]) from None
+        raise BadInput(
+            where, [Fault("", f"cannot be read as JSON: {error.msg}", error.lineno, error.colno)]
+        ) from None
     except (RecursionError, ValueError):
-        raise BadInput(where, [Fault("", "cannot be read: it is nested too deep, or a number is too long")]) from None
+        raise BadInput(
+            where, [Fault("", "cannot be read: it is nested too deep, or a number is too long")]
+        ) from None
     rows = value.get("eyes") if isinstance(value, dict) else value
     if not isinstance(rows, list):
-        raise BadInput(where, [Fault("", "must be a list of eyes, or {\"eyes\": [...]}, each a mapping of columns")], ADVICE)
+        raise BadInput(
+            where,
+            [Fault("", 'must be a list of eyes, or {"eyes": [...]}, each a mapping of columns')],
+            ADVICE,
+        )
     for number, row in enumerate(rows, start=1):
         if not isinstance(row, dict):
             table.faults.append(Fault(f"row {number}", "must be a mapping of columns"))

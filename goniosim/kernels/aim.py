@@ -16,7 +16,8 @@ from .arrays import LEFT
 from .bundle import trace_ray
 
 STEP = 1e-7  # radians, for the derivative by differences
-MAX_STEPS = 40
+MAX_STEPS = 25
+MAX_HALVINGS = 10
 FOUND, NO_START, NOT_CONVERGED = range(3)
 
 
@@ -101,7 +102,7 @@ def aim(s, body, origin, start, code, to_point, goal, tolerance, found_dir, out_
         if length > 0.2:
             a, b = a * 0.2 / length, b * 0.2 / length
         share, moved = 1.0, False
-        for _ in range(30):
+        for _ in range(MAX_HALVINGS):
             trial = tilted(d, tangent, share * a, share * b)
             if exit_ray(s, body, origin, trial, code, p, q):
                 ahead = residual(to_point, goal, axes, p, q, ra)

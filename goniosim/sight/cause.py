@@ -24,43 +24,51 @@ NO_SIGHT = "no ray sets out toward the scope"
 
 WALK_STEPS = 24
 EDGE_STEPS = 60
+STOPPED_SHARE = 3  # every third stopped ray is asked: they lie close together
+LEFT, ABSORBED = 0, 1  # as in kernels/arrays.py, which is loaded late
 
 
-def why_unseen(scene: CompiledScene, wavelength_nm: float, fan: Fan, direction: np.ndarray) -> str:
-    """Cause, in words, why no proper path leaves in a direction (3,)."""
+def why_unseen(scene: CompiledScene, wavelength_nm: float, fan: Fan, goals_mm: list[np.ndarray]) -> str:
+    """Cause, in words, why no proper path goes through all of some points (3,) mm, such as the pupils' centres.
+
+    The points are tried in turn; the first that the walk does not reach tells.
+    """
     if fan.groups:
-        broken = _walk(scene, wavelength_nm, fan, direction)
-        if broken is not None:
-            return broken
-    return _nearest_stopped(scene, wavelength_nm, fan, direction)
+        for goal in goals_mm:
+            broken = _walk(scene, wavelength_nm, fan, goal)
+            if broken is not None:
+                return broken
+    return _nearest_stopped(scene, wavelength_nm, fan, goals_mm[-1])
 
 
-def _walk(scene: CompiledScene, wavelength_nm: float, fan: Fan, direction: np.ndarray) -> str | None:
-    """Walk the nearest proper ray toward the goal and name what breaks its path."""
+def _walk(scene: CompiledScene, wavelength_nm: float, fan: Fan, goal_mm: np.ndarray) -> str | None:
+    """Walk the nearest proper ray toward the goal and name what breaks its path; None where it gets there."""
     from ..kernels.aim import FOUND, aim
 
-    group = max(fan.groups, key=lambda g: float((fan.outward[fan.groups[g]] @ direction).max()))
-    first = np.ascontiguousarray(fan.nearest(group, direction)[0])
-    arrays = scene.arrays(wavelength_nm)
+    rows = np.concatenate(list(fan.groups.values()))
+    toward = goal_mm - fan.points[rows]
+    distance = np.linalg.norm(toward, axis=1)
+    row = rows[int(np.argmax(np.einsum("ij,ij->i", toward, fan.outward[rows]) / distance))]
+    group = int(fan.code[row])
+    begun = fan.points[row] + np.linalg.norm(goal_mm - fan.points[row]) * fan.outward[row]
+    first = np.ascontiguousarray(fan.first[row])
     found, point, out = np.empty(3), np.empty(3), np.empty(3)
-    row = fan.groups[group][int(np.argmax(fan.outward[fan.groups[group]] @ direction))]
-    start_out = fan.outward[row]
     for step in range(1, WALK_STEPS + 1):
-        goal = start_out + (direction - start_out) * step / WALK_STEPS
-        goal /= np.linalg.norm(goal)
-        status = aim(arrays, fan.body, fan.origin_mm, first, group, False, goal, 1e-9, found, point, out)
+        goal = begun + (goal_mm - begun) * step / WALK_STEPS
+        status = aim(scene.arrays(wavelength_nm), fan.body, fan.origin_mm, first, group, True, goal, 1e-6, found, point, out)
         if status != FOUND:
-            return _break_beyond(scene, wavelength_nm, fan, group, found.copy(), direction)
+            return _break_beyond(scene, wavelength_nm, fan, group, found.copy(), goal_mm)
         first = found.copy()
     return None
 
 
-def _break_beyond(scene, wavelength_nm, fan: Fan, group: int, first: np.ndarray, direction: np.ndarray) -> str | None:
+def _break_beyond(scene, wavelength_nm, fan: Fan, group: int, first: np.ndarray, goal_mm: np.ndarray) -> str | None:
     """Step past the edge of a path, toward the goal, and compare the broken path with the whole one."""
     whole = full_path(scene, wavelength_nm, fan.origin_mm, fan.body, first)
     if whole.code != group:
         return None
-    onward = _first_step(scene, wavelength_nm, fan, group, first, whole.outward, direction)
+    direction = goal_mm - whole.last_point_mm
+    onward = _first_step(scene, wavelength_nm, fan, group, first, whole.outward, direction / np.linalg.norm(direction))
     for power in np.linspace(-8.0, -0.5, EDGE_STEPS):
         trial = first + 10.0**power * onward
         trial /= np.linalg.norm(trial)
@@ -113,20 +121,24 @@ def absorbs(scene: CompiledScene, name: str) -> bool:
     return face.finish in ("ground", "opaque") or face.beyond == "opaque"
 
 
-def _nearest_stopped(scene: CompiledScene, wavelength_nm: float, fan: Fan, direction: np.ndarray) -> str:
-    """Cause by the stopped ray that was heading nearest to the goal."""
-    origins = np.ascontiguousarray(np.broadcast_to(fan.origin_mm, fan.first.shape))
-    out = raw_trace(scene.arrays(wavelength_nm), origins, fan.first, np.full(len(fan.first), fan.body, np.int64), True)
+def _nearest_stopped(scene: CompiledScene, wavelength_nm: float, fan: Fan, goal_mm: np.ndarray) -> str:
+    """Cause by the stopped ray that was heading nearest to the goal; proper rays are not asked."""
+    rows = np.flatnonzero((fan.status != LEFT) | (fan.stray > 0))[::STOPPED_SHARE]
+    first = np.ascontiguousarray(fan.first[rows])
+    origins = np.ascontiguousarray(np.broadcast_to(fan.origin_mm, first.shape))
+    out = raw_trace(scene.arrays(wavelength_nm), origins, first, np.full(len(first), fan.body, np.int64), True)
     best, words = -2.0, NO_SIGHT
-    for ray in range(len(fan.first)):
-        heading, cause = _stop_of(scene, out, fan.first[ray], ray)
-        if cause is not None and heading @ direction > best:
-            best, words = float(heading @ direction), cause
+    for ray in range(len(first)):
+        place, heading, cause = _stop_of(scene, out, first[ray], ray)
+        toward = goal_mm - place
+        near = float(heading @ toward) / float(np.linalg.norm(toward))
+        if cause is not None and near > best:
+            best, words = near, cause
     return words
 
 
 def _stop_of(scene: CompiledScene, out: dict, first: np.ndarray, ray: int):
-    """Where a ray was first stopped: the direction it would have gone on in, and the cause."""
+    """Where a ray was first stopped: the place, the direction it would have gone on in, and the cause."""
     before = first
     for step in range(int(out["met"][ray])):
         number = int(out["path_face"][ray, step])
@@ -135,8 +147,8 @@ def _stop_of(scene: CompiledScene, out: dict, first: np.ndarray, ray: int):
         if number % 2 and face.finish != "mirror" and face.works_by is None:
             # At the critical angle light would graze along the face: the way it would have left.
             grazing = before + onward
-            return grazing / np.linalg.norm(grazing), TOTAL_REFLECTION.format(face=face.name)
+            return out["path_point"][ray, step], grazing / np.linalg.norm(grazing), TOTAL_REFLECTION.format(face=face.name)
         before = onward
-    if out["status"][ray] == 1:
-        return before, BLOCKED.format(face=scene.faces[int(out["ended"][ray])].name)
-    return before, None
+    if out["status"][ray] == ABSORBED:
+        return out["points"][ray], before, BLOCKED.format(face=scene.faces[int(out["ended"][ray])].name)
+    return out["points"][ray], before, None

@@ -15,7 +15,7 @@ from .target import Target
 
 FROM_DEG, TO_DEG, STEP_DEG = 0.0, 115.0, 1.0
 EDGE_DEG = 1e-6  # to which the ends of an interval are found
-BEYOND_DEG = 1e-3  # how far outside an end its cause is asked for
+BEYOND_DEG = (1e-3, 1e-2, 0.1, 0.5)  # how far outside an end its cause is asked for, until a pupil is lost
 
 
 @dataclass(frozen=True)
@@ -89,8 +89,20 @@ class _Sweep:
                 outside, power = middle, reached
         if power > 0.0:
             return inside, TOO_DIM.format(value=power, floor=self.viewer.floor)
-        return inside, self.cause(outside + np.sign(outside - inside) * BEYOND_DEG)
+        return inside, self.cause(outside, inside)
 
-    def cause(self, angle: float) -> str:
-        """Why nothing is seen along a line of sight."""
-        return why_unseen(self.viewer.compiled, self.viewer.nm, self.fan, direction_from_axis(angle, self.away_clock))
+    def cause(self, angle: float, seen_at: float | None = None) -> str:
+        """Why nothing is seen along a line of sight; seen_at: a neighbouring angle that still sees."""
+        viewer, fan = self.viewer, self.fan
+        centre = fan.origin_mm
+        if seen_at is not None:
+            seen = viewer.best_centring(fan, self.scope(seen_at, centre))
+            centre = centre if seen is None else seen.centre_mm
+        angles = [angle] if seen_at is None else [angle + np.sign(angle - seen_at) * beyond for beyond in BEYOND_DEG]
+        scopes = [self.scope(onward, centre) for onward in angles]
+        goals = [goal for scope in scopes for goal in (scope.far_mm(), scope.pupil(-1.0), scope.pupil(1.0))]
+        return why_unseen(viewer.compiled, viewer.nm, fan, goals)
+
+    def scope(self, angle: float, centre_mm: np.ndarray):
+        """The scope at a line of sight of the sweep."""
+        return self.viewer.scope_at(centre_mm, direction_from_axis(angle, self.away_clock))

@@ -11,8 +11,9 @@ from ..scene.tracing import raw_trace
 from .fan import Fan
 
 PUPIL_TOLERANCE_MM = 1e-10
+FAR_MM = 1e6
 TRIES = 3  # nearest rays of a group from which Newton may start
-WIDEST_START_DEG = 25.0  # a group whose nearest ray leaves farther off than this is not tried
+WIDEST_START_DEG = 8.0  # a group whose nearest ray leaves farther off than this is not tried
 
 
 @dataclass(frozen=True)
@@ -120,6 +121,11 @@ class Scoped:
     def pupil(self, side: float) -> np.ndarray:
         """Centre of a pupil: side -1 left, 0 the middle between, +1 right."""
         return self.centre_mm + self.working_distance_mm * self.sight + 0.5 * side * self.stereo_base_mm * self.right
+
+
+    def far_mm(self) -> np.ndarray:
+        """A point so far along the line of sight that light toward it leaves in its direction."""
+        return self.centre_mm + FAR_MM * self.sight
 
 
 @dataclass(frozen=True)

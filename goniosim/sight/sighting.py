@@ -156,13 +156,8 @@ class Viewer:
         return OUTSIDE_FIELD if np.linalg.norm(off) > 0.5 * scope.field_diameter_mm else None
 
     def _cause(self, fan: Fan, scope: Scoped) -> str:
-        """Why no view exists: asked for the pupil that is not reached."""
-        for side in (0.0, -1.0, 1.0):
-            direction = scope.pupil(side) - fan.origin_mm
-            if not any(through_point(self.compiled, self.nm, fan, group, scope.pupil(side)) is not None
-                       for group in fan.groups):
-                return why_unseen(self.compiled, self.nm, fan, direction / np.linalg.norm(direction))
-        return why_unseen(self.compiled, self.nm, fan, scope.sight)
+        """Why no view exists: asked for the axis, then for the pupils in turn."""
+        return why_unseen(self.compiled, self.nm, fan, [scope.far_mm(), *(scope.pupil(side) for side in (-1.0, 1.0, 0.0))])
 
 
 def graze_deg(target: Target, path: LightPath) -> float:

@@ -15,11 +15,18 @@ SHIPPED = sorted(path.stem for path in (shipped_folder("plugins") / "eyes").glob
 
 VARIED = {
     "usual": {},
-    "narrow": {"chamber": {"depth_mm": 2.4, "vault_mm": 0.9, "width_mm": 11.5}, "angle": {"width_deg": 12},
-               "iris": {"bow_mm": 0.6}},
+    "narrow": {
+        "chamber": {"depth_mm": 2.4, "vault_mm": 0.9, "width_mm": 11.5},
+        "angle": {"width_deg": 12},
+        "iris": {"bow_mm": 0.6},
+    },
     "toric": {"cornea": {"front": {"flat_mm": 8.1, "steep_mm": 7.5, "steep_axis_deg": 75}}},
     "small-pupil": {"iris": {"pupil_mm": 1.5, "bow_mm": 0.3}},
-    "wide-chamber": {"chamber": {"width_mm": 12.6, "depth_mm": 3.2}, "angle": {"width_deg": 40}, "iris": {"bow_mm": 0.35}},
+    "wide-chamber": {
+        "chamber": {"width_mm": 12.6, "depth_mm": 3.2},
+        "angle": {"width_deg": 40},
+        "iris": {"bow_mm": 0.35},
+    },
     "one-height": {"angle": {"meshwork_height_um": 620, "width_deg": 28}, "iris": {"bow_mm": 0.4}},
     "aod-alone": {"angle": {"aod500_mm": 0.35}, "iris": {"bow_mm": 0.35}},
     "aod-and-width": {"angle": {"aod500_mm": 0.47, "width_deg": 35}, "iris": {"bow_mm": 0.3}},

@@ -1,4 +1,4 @@
-"""Arc lengths, tangents and normals of the lining; faces that meet; a chamber that light cannot leave unseen."""
+"""Arc lengths, tangents and normals of the lining; faces that meet; a chamber that is closed."""
 
 from __future__ import annotations
 
@@ -29,12 +29,20 @@ class Glass:
         return self._index
 
 
-MEDIA = {"cornea": Glass(1.376), "aqueous": Glass(1.336), "lens-equivalent": Glass(1.42), "pmma": Glass(1.49),
-         "vitreous": Glass(1.336), "air": Glass(1.0)}
+MEDIA = {
+    "cornea": Glass(1.376),
+    "aqueous": Glass(1.336),
+    "lens-equivalent": Glass(1.42),
+    "pmma": Glass(1.49),
+    "vitreous": Glass(1.336),
+    "air": Glass(1.0),
+}
 
 
 @pytest.mark.parametrize("name", ["usual", "toric", "conic"])
-@pytest.mark.parametrize("structure", ["scleral-spur", "pigmented-meshwork", "clear-meshwork", "schwalbe-line"])
+@pytest.mark.parametrize(
+    "structure", ["scleral-spur", "pigmented-meshwork", "clear-meshwork", "schwalbe-line"]
+)
 def test_arc_length_agrees_with_scipy(name, structure):
     """scipy's quadrature of sqrt(1 + z'^2) over the face's own heights is the outside authority."""
     eye, clock = built(name), 2.3
@@ -55,7 +63,19 @@ def test_arc_length_agrees_with_scipy(name, structure):
 def test_arc_of_undoes_wall_point(name):
     anatomy = built(name).anatomy
     for clock in (0.7, 3.0, 8.1, 12.0):
-        for arc in (anatomy.bands.margin_mm + 1e-6, -2.0, -0.5, anatomy.bands.root_mm, -0.1, -1e-4, 0.0, 0.3, 1.0, 3.0, 5.5):
+        for arc in (
+            anatomy.bands.margin_mm + 1e-6,
+            -2.0,
+            -0.5,
+            anatomy.bands.root_mm,
+            -0.1,
+            -1e-4,
+            0.0,
+            0.3,
+            1.0,
+            3.0,
+            5.5,
+        ):
             assert anatomy.arc_of(anatomy.wall_point(arc, clock)) == pytest.approx(arc, abs=1e-12)
 
 
@@ -73,7 +93,10 @@ def test_tangent_and_normal_of_the_lining(name):
             # The normal leads into the chamber: a little along it lies on the chamber's side of the face.
             face = anatomy.face_at(arc)
             side = 1.0 if dict(eye.inner_sides)[face] == "ahead" else -1.0
-            assert side * eye.faces[face].side_value((anatomy.wall_point(arc, clock) + 1e-3 * normal)[None])[0] > 0.0
+            assert (
+                side * eye.faces[face].side_value((anatomy.wall_point(arc, clock) + 1e-3 * normal)[None])[0]
+                > 0.0
+            )
 
 
 def test_structures_are_found_where_they_lie():
@@ -99,7 +122,8 @@ def test_neighbouring_faces_meet(name):
         for face, point in (("cornea-back", spur), ("ciliary-face", spur), ("ciliary-face", root)):
             assert eye.faces[face].side_value(point[None])[0] == pytest.approx(0.0, abs=1e-9)
     assert section_height(eye, "iris-front", anatomy.mean.iris.root[0] - 1e-12)[0] == pytest.approx(
-        anatomy.mean.iris.root[1], abs=1e-9)
+        anatomy.mean.iris.root[1], abs=1e-9
+    )
     cylinder = eye.faces["iris-margin"].shape
     assert cylinder.radius_mm == pytest.approx(math.hypot(*margin[:2]), abs=1e-12)
     assert cylinder.z_max_mm == pytest.approx(margin[2], abs=1e-8)
@@ -115,7 +139,9 @@ def test_the_chamber_is_closed(name):
     starts = []
     for _ in range(150):
         clock, arc = rng.uniform(0.01, 12.0), rng.uniform(eye.anatomy.bands.root_mm + 0.01, 5.0)
-        starts.append(eye.anatomy.wall_point(arc, clock) + rng.uniform(0.01, 0.1) * eye.anatomy.wall_normal(arc, clock))
+        starts.append(
+            eye.anatomy.wall_point(arc, clock) + rng.uniform(0.01, 0.1) * eye.anatomy.wall_normal(arc, clock)
+        )
     traced = trace(scene, np.repeat(starts, 60, axis=0), rng.normal(size=(9000, 3)), 555.0)
     assert set(np.unique(traced.status)) == {LEFT, ABSORBED}
     left = [face for face, status in zip(traced.ended_on, traced.status) if status == LEFT]
@@ -151,4 +177,6 @@ def test_canal_lies_behind_the_meshwork():
         assert built("usual").faces["cornea-back"].side_value(end[None])[0] > 0.1
     length = np.linalg.norm(np.subtract(*anatomy.canal(3.0)))
     assert 0.2 < length < 0.4  # meridional width 200 to 400 um by histology, from memory
-    assert anatomy.canal_width_mm < anatomy.meshwork_height_mm(3.0)  # shorter than spur to Schwalbe (Luetjen-Drecoll & Rohen)
+    assert anatomy.canal_width_mm < anatomy.meshwork_height_mm(
+        3.0
+    )  # shorter than spur to Schwalbe (Luetjen-Drecoll & Rohen)

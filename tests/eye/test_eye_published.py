@@ -28,7 +28,9 @@ def thickness(eye, x):
 
 
 def test_radial_thickness_law():
-    """T(x) = Tm (1 + TV x^2), TV 0.0088 +- 0.0020 mm^-2, 80 eyes; +0.9 % (0.4 to 1.3) at 1 mm, +22 % (12 to 32) at 5 mm."""
+    """T(x) = Tm (1 + TV x^2), TV 0.0088 +- 0.0020 mm^-2, 80 eyes; +0.9 % (0.4 to 1.3) at 1 mm, +22 % (12 to
+    32) at 5 mm.
+    """
     eye = built("usual")
     centre = thickness(eye, 0.0)
     for x in (2.0, 3.0, 4.0):
@@ -45,7 +47,9 @@ def test_peripheral_thickness():
 
 @pytest.mark.parametrize("r, slope_deg", [(5.9, 58.2), (5.706, 55.8), (5.495, 53.2)])
 def test_wall_slopes_of_the_rehearsal(r, slope_deg):
-    """A rehearsal of the same construction by other code gave these slopes at spur, mid-meshwork and Schwalbe's line."""
+    """A rehearsal of the same construction by other code gave these slopes at spur, mid-meshwork and
+    Schwalbe's line.
+    """
     step = 1e-5
     inner, outer = section_height(built("usual"), "cornea-back", [r - 2 * step, r - 0.0])
     assert math.degrees(math.atan((inner - outer) / (2 * step))) == pytest.approx(slope_deg, abs=0.1)
@@ -76,36 +80,53 @@ def test_central_conic_runs_on_smoothly(face):
 
 
 def test_narrow_angle_is_of_the_small_class():
-    """AOD750 0.174 +- 0.060 mm and TISA750 0.075 +- 0.035 mm^2 where gonioscopy says small: Eye and Vision 2020,
-    s40662-020-00196-1."""
+    """AOD750 0.174 +- 0.060 mm and TISA750 0.075 +- 0.035 mm^2 where gonioscopy says small: Eye and Vision
+    2020, s40662-020-00196-1.
+    """
     measured = built("adult-narrow").report["measured_on_model"]
     assert abs(measured["aod750_mm"] - 0.174) < 0.060
     assert abs(measured["tisa750_mm2"] - 0.075) < 0.035
 
 
 def test_open_angle_aod500():
-    """A ciliary band of 0.15 to 0.2 mm gave an AOD500 of 0.43 to 0.46 mm at 35 deg in the rehearsal by other code."""
+    """A ciliary band of 0.15 to 0.2 mm gave an AOD500 of 0.43 to 0.46 mm at 35 deg in the rehearsal by
+    other code.
+    """
     assert 0.43 <= built("usual").report["measured_on_model"]["aod500_mm"] <= 0.46
 
 
 def test_eyes_drawn_from_published_means_can_be_built():
-    """Means and SDs of figures published separately, drawn independently: front 7.79 +- 0.27, back/front 0.838 +- 0.02,
-    Q -0.18 +- 0.18 and -0.38 +- 0.27, thickness 544 +- 33 um, depth 3.03 +- 0.37, width 11.75 +- 0.42,
-    vault 0.32 +- 0.27 mm (Dubbelman 2006; Acta Ophthalmol Scand 2002; Kadhim 2016; Nongpiur 2011; Ruefer 2005)."""
+    """Means and SDs of figures published separately, drawn independently: front 7.79 +- 0.27, back/front
+    0.838 +- 0.02, Q -0.18 +- 0.18 and -0.38 +- 0.27, thickness 544 +- 33 um, depth 3.03 +- 0.37, width
+    11.75 +- 0.42, vault 0.32 +- 0.27 mm (Dubbelman 2006; Acta Ophthalmol Scand 2002; Kadhim 2016;
+    Nongpiur 2011; Ruefer 2005).
+    """
     rng = np.random.default_rng(20)
     contradicted = 0
     for _ in range(120):
         front = rng.normal(7.79, 0.27)
-        mapping, _, _ = complete({
-            "cornea": {"front": {"radius_mm": front, "q": rng.normal(-0.18, 0.18)},
-                       "back": {"radius_mm": front * rng.normal(0.838, 0.02), "q": rng.normal(-0.38, 0.27)},
-                       "thickness_um": rng.normal(544.0, 33.0)},
-            "chamber": {"depth_mm": rng.normal(3.03, 0.37), "width_mm": rng.normal(11.75, 0.42),
-                        "vault_mm": rng.normal(0.32, 0.27)},
-            "angle": {"width_deg": rng.uniform(15.0, 42.0)}, "iris": {"bow_mm": rng.uniform(0.2, 0.6)}}, "right")
+        mapping, _, _ = complete(
+            {
+                "cornea": {
+                    "front": {"radius_mm": front, "q": rng.normal(-0.18, 0.18)},
+                    "back": {"radius_mm": front * rng.normal(0.838, 0.02), "q": rng.normal(-0.38, 0.27)},
+                    "thickness_um": rng.normal(544.0, 33.0),
+                },
+                "chamber": {
+                    "depth_mm": rng.normal(3.03, 0.37),
+                    "width_mm": rng.normal(11.75, 0.42),
+                    "vault_mm": rng.normal(0.32, 0.27),
+                },
+                "angle": {"width_deg": rng.uniform(15.0, 42.0)},
+                "iris": {"bow_mm": rng.uniform(0.2, 0.6)},
+            },
+            "right",
+        )
         eye = build(mapping, "right")
         slope = math.degrees(math.atan(-float(eye.anatomy.mean.wall.slope(eye.anatomy.spur_r_mm))))
         assert SPUR_SLOPE_DEG[0] - 1e-9 <= slope <= SPUR_SLOPE_DEG[1] + 1e-9
-        assert eye.report["measured_on_model"]["angle_width_deg"] == pytest.approx(mapping["angle"]["width_deg"], abs=1e-6)
+        assert eye.report["measured_on_model"]["angle_width_deg"] == pytest.approx(
+            mapping["angle"]["width_deg"], abs=1e-6
+        )
         contradicted += any("contradict" in note for note in eye.notes)
     assert contradicted < 30

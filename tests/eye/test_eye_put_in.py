@@ -53,15 +53,19 @@ def test_completing_a_complete_eye_changes_nothing(name):
 
 
 def test_marks_name_what_was_filled_and_nothing_else():
-    _, assumed, _ = complete({"chamber": {"depth_mm": 2.6}, "angle": {"meshwork_height_um": {"nasal": 700}}}, "right")
+    _, assumed, _ = complete(
+        {"chamber": {"depth_mm": 2.6}, "angle": {"meshwork_height_um": {"nasal": 700}}}, "right"
+    )
     assert "chamber.depth_mm" not in assumed
     assert {"chamber.vault_mm", "cornea.front.radius_mm", "angle.meshwork_height_um.temporal"} <= assumed
     assert "angle.meshwork_height_um.nasal" not in assumed
 
 
 def test_measurements_replace_the_other_form_of_a_surface():
-    merged = with_measured(shipped_mapping("adult-open"),
-                           {"cornea": {"front": {"flat_mm": 8.0, "steep_mm": 7.6}}, "chamber": {"depth_mm": 2.8}})
+    merged = with_measured(
+        shipped_mapping("adult-open"),
+        {"cornea": {"front": {"flat_mm": 8.0, "steep_mm": 7.6}}, "chamber": {"depth_mm": 2.8}},
+    )
     assert "radius_mm" not in merged["cornea"]["front"]
     assert merged["cornea"]["front"]["q"] == -0.18
     assert merged["chamber"] == {"depth_mm": 2.8, "width_mm": 11.8, "vault_mm": 0.35, "fill": "aqueous"}

@@ -15,6 +15,10 @@ SUBJECTS = {
     "schematic_eyes": "schematic eyes",
     "stigmatic": "surfaces without aberration",
     "planes": "layers, prisms, mirrors",
+    "pencils": "narrow pencils",
+    "traced_eyes": "shipped schematic eyes",
+    "pupil": "the pupil seen obliquely",
+    "real_lenses": "shipped lenses on an eye",
 }
 """Module of this folder -> what it checks."""
 
