@@ -18,6 +18,8 @@ from .bundle import trace_ray
 STEP = 1e-7  # radians, for the derivative by differences
 MAX_STEPS = 25
 MAX_HALVINGS = 10
+TRIES = 4  # starts from which Newton is tried
+APART_COS = 0.996  # cosine of 5 degrees: a start this near to one that failed is not tried
 FOUND, NO_START, NOT_CONVERGED = range(3)
 
 
@@ -193,6 +195,27 @@ def power_of(s, body, origin, d):
 
 
 @kernel
+def nearest_start(first, outward, w, widest_cos, failed):
+    """Row of the ray that leaves nearest to w, apart from starts that failed; -1: none within widest_cos.
+
+    Where the map from first to last direction folds, the nearest ray may lie on a branch that never
+    reaches w; the next start is then looked for elsewhere.
+    """
+    best, row = widest_cos, -1
+    for j in range(len(first)):
+        near = outward[j, 0] * w[0] + outward[j, 1] * w[1] + outward[j, 2] * w[2]
+        if near <= best:
+            continue
+        apart = True
+        for k in range(len(failed)):
+            if first[j, 0] * failed[k, 0] + first[j, 1] * failed[k, 1] + first[j, 2] * failed[k, 2] > APART_COS:
+                apart = False
+        if apart:
+            best, row = near, j
+    return row
+
+
+@kernel
 def sweep(s, body, origin, code, first, outward, sights, rights, distance_mm, half_base_mm, widest_cos, power):
     """For each line of sight, the lesser throughput to the two pupils by one list of faces, 0 where not seen.
 
@@ -200,16 +223,11 @@ def sweep(s, body, origin, code, first, outward, sights, rights, distance_mm, ha
     """
     dirs, points, outs = np.empty((3, 3)), np.empty((3, 3)), np.empty((3, 3))
     centre, apparent = np.empty(3), np.empty(3)
+    failed = np.empty((TRIES, 3))
     for i in range(len(sights)):
         w = sights[i]
-        tried = -1
-        for _ in range(2):
-            # The nearest ray first; where Newton fails from it, the second nearest.
-            best, row = widest_cos, -1
-            for j in range(len(first)):
-                near = outward[j, 0] * w[0] + outward[j, 1] * w[1] + outward[j, 2] * w[2]
-                if near > best and j != tried:
-                    best, row = near, j
+        for attempt in range(TRIES):
+            row = nearest_start(first, outward, w, widest_cos, failed[:attempt])
             if row < 0:
                 break
             status, _, _ = centred_sight(s, body, origin, first[row].copy(), code, w, rights[i], distance_mm,
@@ -218,4 +236,4 @@ def sweep(s, body, origin, code, first, outward, sights, rights, distance_mm, ha
                 reached = min(power_of(s, body, origin, dirs[0]), power_of(s, body, origin, dirs[1]))
                 power[i] = max(power[i], reached)
                 break
-            tried = row
+            failed[attempt] = first[row]

@@ -34,12 +34,6 @@ class Fan:
     ended: np.ndarray
     groups: dict[int, np.ndarray]
 
-    def nearest(self, group: int, direction: np.ndarray, count: int = 1) -> np.ndarray:
-        """First directions of the group's rays that leave nearest to a direction, (count, 3)."""
-        rows = self.groups[group]
-        order = np.argsort(-(self.outward[rows] @ direction), kind="stable")[:count]
-        return self.first[rows[order]]
-
 
 def hemisphere(side: int) -> np.ndarray:
     """Grid points of the unit square, mapped with equal area to the hemisphere about +z, (side, side, 3)."""

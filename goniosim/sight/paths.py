@@ -12,7 +12,6 @@ from .fan import Fan
 
 PUPIL_TOLERANCE_MM = 1e-10
 FAR_MM = 1e6
-TRIES = 3  # nearest rays of a group from which Newton may start
 WIDEST_START_DEG = 8.0  # a group whose nearest ray leaves farther off than this is not tried
 
 
@@ -69,25 +68,39 @@ def full_path(scene: CompiledScene, wavelength_nm: float, origin_mm: np.ndarray,
 
 def through_point(scene: CompiledScene, wavelength_nm: float, fan: Fan, group: int, goal_mm: np.ndarray,
                   start: np.ndarray | None = None) -> np.ndarray | None:
-    """First direction (3,) of the group's path through a point within 1e-10 mm, or None."""
+    """First direction (3,) of the group's path through a point within 1e-10 mm, or None.
+
+    start : first direction of a path known to pass near the point.
+    """
     toward = goal_mm - fan.points[fan.groups[group]]
     toward /= np.linalg.norm(toward, axis=1, keepdims=True)
-    along = np.einsum("ij,ij->i", toward, fan.outward[fan.groups[group]])
-    if start is None:
-        if along.max() < np.cos(np.radians(WIDEST_START_DEG)):
-            return None
-        starts = fan.first[fan.groups[group][np.argsort(-along, kind="stable")[:TRIES]]]
-    else:
-        starts = start[None]
+    near = np.einsum("ij,ij->i", toward, fan.outward[fan.groups[group]])
+    starts = starts_of(fan, group, near) if start is None else iter([start])
     return _newton(scene, wavelength_nm, fan, group, starts, True, goal_mm, PUPIL_TOLERANCE_MM)
 
 
 def along_direction(scene: CompiledScene, wavelength_nm: float, fan: Fan, group: int, direction: np.ndarray) -> np.ndarray | None:
     """First direction (3,) of the group's path that leaves in exactly a direction, or None."""
-    best = float((fan.outward[fan.groups[group]] @ direction).max())
-    if best < np.cos(np.radians(WIDEST_START_DEG)):
-        return None
-    return _newton(scene, wavelength_nm, fan, group, fan.nearest(group, direction, TRIES), False, direction, 1e-13)
+    starts = starts_of(fan, group, fan.outward[fan.groups[group]] @ direction)
+    return _newton(scene, wavelength_nm, fan, group, starts, False, direction, 1e-13)
+
+
+def starts_of(fan: Fan, group: int, near: np.ndarray):
+    """First directions from which Newton may start, best first: the ray that leaves nearest to the goal, then
+    the nearest that sets out well apart from those, for maps that fold.
+
+    near : (n,) cosines between the group's rays, as they leave, and the goal.
+    """
+    from ..kernels.aim import APART_COS, TRIES
+
+    first = fan.first[fan.groups[group]]
+    open_cos = np.where(near >= np.cos(np.radians(WIDEST_START_DEG)), near, -2.0)
+    for _ in range(TRIES):
+        row = int(np.argmax(open_cos))
+        if open_cos[row] < -1.5:
+            return
+        yield first[row]
+        open_cos[first @ first[row] > APART_COS] = -2.0
 
 
 def _newton(scene, wavelength_nm, fan, group, starts, to_point, goal, tolerance) -> np.ndarray | None:
@@ -145,12 +158,9 @@ def centred(scene: CompiledScene, wavelength_nm: float, fan: Fan, group: int, sc
     """Centre the scope on T's image along its line of sight (design: `focus_on: target`), or None."""
     from ..kernels.aim import FOUND, centred_sight
 
-    rows = fan.groups[group]
-    if float((fan.outward[rows] @ scope.sight).max()) < np.cos(np.radians(WIDEST_START_DEG)):
-        return None
     dirs, points, outs = np.empty((3, 3)), np.empty((3, 3)), np.empty((3, 3))
     centre, apparent = np.empty(3), np.empty(3)
-    for start in fan.nearest(group, scope.sight, TRIES):
+    for start in starts_of(fan, group, fan.outward[fan.groups[group]] @ scope.sight):
         status, gap, _ = centred_sight(
             scene.arrays(wavelength_nm), fan.body, fan.origin_mm, np.ascontiguousarray(start), group, scope.sight,
             scope.right, scope.working_distance_mm, 0.5 * scope.stereo_base_mm, dirs, points, outs, centre, apparent)

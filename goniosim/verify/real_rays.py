@@ -55,7 +55,7 @@ def real_rays(name: str, count: int) -> RealRays:
     """`count` rays of a shipped scene that leave, out of a seeded sample over the hemisphere at its target."""
     scene = shipped_scene(name)
     target = scene_target(scene)
-    directions = _over_hemisphere(target.normal, 6000)
+    directions = over_hemisphere(target.normal, 6000)
     traces = scene.trace(target.point_mm, directions, paths=True)
     leaves = np.flatnonzero((traces.status == 0) & ~traces.stray)
     by_faces: dict[tuple, list[int]] = {}
@@ -66,7 +66,7 @@ def real_rays(name: str, count: int) -> RealRays:
                     [traces.path_points_mm[row] for row in rows], [traces.path_faces[row] for row in rows])
 
 
-def _over_hemisphere(axis: np.ndarray, count: int) -> np.ndarray:
+def over_hemisphere(axis: np.ndarray, count: int) -> np.ndarray:
     """Seeded random unit vectors within 89 deg of an axis, (n, 3)."""
     vectors = np.random.default_rng(SEED).normal(size=(4 * count, 3))
     vectors /= np.linalg.norm(vectors, axis=1, keepdims=True)

@@ -18,7 +18,9 @@ SUBJECTS = {
     "pencils": "narrow pencils",
     "traced_eyes": "shipped schematic eyes",
     "pupil": "the pupil seen obliquely",
+    "eyes": "the built eye",
     "real_lenses": "shipped lenses on an eye",
+    "trade": "facts of the trade",
 }
 """Module of this folder -> what it checks."""
 
