@@ -72,7 +72,17 @@ if CACHE_FOLDER is not None:
 
 def kernel(function):
     """Compile a function on first use, cached on disk; it lets other threads run."""
-    return numba.njit(cache=CACHE_FOLDER is not None, nogil=True, error_model="numpy")(function)
+    return _compiled(function)
+
+
+def small_kernel(function):
+    """A kernel that is copied into its callers: handing arrays on costs more than its few lines."""
+    return _compiled(function, forceinline=True)
+
+
+def _compiled(function, **options):
+    return numba.njit(cache=CACHE_FOLDER is not None, nogil=True, error_model="numpy", fastmath={"contract"},
+                      **options)(function)
 
 
 def compiled_before() -> bool:

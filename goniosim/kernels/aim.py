@@ -16,6 +16,8 @@ from .arrays import LEFT
 from .bundle import trace_ray
 
 STEP = 1e-7  # radians, for the derivative by differences
+LONGEST_STEP = 0.2  # radians
+MAX_CENTRINGS = 60
 MAX_STEPS = 25
 MAX_HALVINGS = 10
 TRIES = 4  # starts from which Newton is tried
@@ -24,16 +26,26 @@ FOUND, NO_START, NOT_CONVERGED = range(3)
 
 
 @kernel
-def square_axes(w):
-    """Two unit vectors square to a unit vector and to each other."""
-    e = np.empty((2, 3))
-    i = 0 if abs(w[0]) <= abs(w[1]) and abs(w[0]) <= abs(w[2]) else (1 if abs(w[1]) <= abs(w[2]) else 2)
-    a = np.zeros(3)
-    a[i] = 1.0
-    e[0] = np.cross(w, a)
-    e[0] /= math.sqrt(np.dot(e[0], e[0]))
-    e[1] = np.cross(w, e[0])
-    return e
+def dot(a, b):
+    """Scalar product of two (3,) arrays."""
+    return a[0] * b[0] + a[1] * b[1] + a[2] * b[2]
+
+
+@kernel
+def square_axes(w, axes):
+    """Two unit vectors square to a unit vector and to each other, into axes (2, 3)."""
+    x, y, z = w[0], w[1], w[2]
+    # Cross with the axis to which w leans least.
+    if abs(x) <= abs(y) and abs(x) <= abs(z):
+        a, b, c = 0.0, z, -y
+    elif abs(y) <= abs(z):
+        a, b, c = -z, 0.0, x
+    else:
+        a, b, c = y, -x, 0.0
+    scale = 1.0 / math.sqrt(a * a + b * b + c * c)
+    a, b, c = a * scale, b * scale, c * scale
+    axes[0, 0], axes[0, 1], axes[0, 2] = a, b, c
+    axes[1, 0], axes[1, 1], axes[1, 2] = y * c - z * b, z * a - x * c, x * b - y * a
 
 
 @kernel
@@ -64,10 +76,20 @@ def residual(to_point, goal, axes, point, direction, out):
 
 
 @kernel
-def tilted(d, tangent, a, b):
-    """Unit vector d leaned by a, b along its two tangent axes."""
-    e = d + a * tangent[0] + b * tangent[1]
-    return e / math.sqrt(np.dot(e, e))
+def tilt(d, tangent, a, b, out):
+    """Unit vector d leaned by a, b along its two tangent axes, into out (3,)."""
+    size = 0.0
+    for k in range(3):
+        out[k] = d[k] + a * tangent[0, k] + b * tangent[1, k]
+        size += out[k] * out[k]
+    copy(out, out, 1.0 / math.sqrt(size))
+
+
+@kernel
+def copy(source, target, factor):
+    """Three numbers, times a factor, into target."""
+    for k in range(3):
+        target[k] = factor * source[k]
 
 
 @kernel
@@ -75,25 +97,27 @@ def aim(s, body, origin, start, code, to_point, goal, tolerance, found_dir, out_
     """Solve for the first direction. to_point: goal is a point in mm, else a unit direction.
 
     Fills found_dir, out_point, out_dir (3,) with the best reached; returns FOUND, NO_START or
-    NOT_CONVERGED. tolerance: mm for a point, radians for a direction.
+    NOT_CONVERGED. tolerance: mm for a point, radians for a direction. start may be found_dir itself.
     """
-    d = start.copy()
+    d, trial, p, q = np.empty(3), np.empty(3), np.empty(3), np.empty(3)
+    r, ra, rb = np.empty(2), np.empty(2), np.empty(2)
+    axes, tangent = np.empty((2, 3)), np.empty((2, 3))
+    copy(start, d, 1.0)
     if not exit_ray(s, body, origin, d, code, out_point, out_dir):
         return NO_START
+    copy(goal, p, 1.0)
     if to_point:
-        towards = goal - out_point
-        axes = square_axes(towards / math.sqrt(np.dot(towards, towards)))
-    else:
-        axes = square_axes(goal)
-    r, ra, rb = np.empty(2), np.empty(2), np.empty(2)
-    p, q = np.empty(3), np.empty(3)
+        for k in range(3):
+            p[k] -= out_point[k]
+        copy(p, p, 1.0 / math.sqrt(dot(p, p)))
+    square_axes(p, axes)
     forward = residual(to_point, goal, axes, out_point, out_dir, r)
     size = math.hypot(r[0], r[1])
     for _ in range(MAX_STEPS):
         if forward and size <= tolerance:
             break
-        tangent = square_axes(d)
-        if not slope_along(s, body, origin, d, tangent, code, to_point, goal, axes, r, ra, rb, p, q):
+        square_axes(d, tangent)
+        if not slope_along(s, body, origin, d, tangent, code, to_point, goal, axes, r, ra, rb, p, q, trial):
             break
         det = ra[0] * rb[1] - rb[0] * ra[1]
         if det == 0.0:
@@ -101,11 +125,9 @@ def aim(s, body, origin, start, code, to_point, goal, tolerance, found_dir, out_
         a = -(r[0] * rb[1] - r[1] * rb[0]) / det
         b = -(r[1] * ra[0] - r[0] * ra[1]) / det
         length = math.hypot(a, b)
-        if length > 0.2:
-            a, b = a * 0.2 / length, b * 0.2 / length
-        share, moved = 1.0, False
+        share, moved, new, ahead = min(1.0, LONGEST_STEP / length) if length > 0.0 else 1.0, False, size, forward
         for _ in range(MAX_HALVINGS):
-            trial = tilted(d, tangent, share * a, share * b)
+            tilt(d, tangent, share * a, share * b, trial)
             if exit_ray(s, body, origin, trial, code, p, q):
                 ahead = residual(to_point, goal, axes, p, q, ra)
                 new = math.hypot(ra[0], ra[1])
@@ -115,28 +137,31 @@ def aim(s, body, origin, start, code, to_point, goal, tolerance, found_dir, out_
             share *= 0.5
         if not moved:
             break
-        d[:] = trial
-        out_point[:], out_dir[:] = p, q
-        r[:], size, forward = ra, new, ahead
-    found_dir[:] = d
+        copy(trial, d, 1.0)
+        copy(p, out_point, 1.0)
+        copy(q, out_dir, 1.0)
+        r[0], r[1] = ra[0], ra[1]
+        size, forward = new, ahead
+    copy(d, found_dir, 1.0)
     return FOUND if forward and size <= tolerance else NOT_CONVERGED
 
 
 @kernel
-def slope_along(s, body, origin, d, tangent, code, to_point, goal, axes, r, ra, rb, p, q):
+def slope_along(s, body, origin, d, tangent, code, to_point, goal, axes, r, ra, rb, p, q, trial):
     """Derivatives of the residual along both tangent axes into ra, rb; False at a path's very edge."""
-    for axis in range(2):
+    done = False
+    for attempt in range(4):
+        axis, sign = attempt // 2, 1.0 - 2.0 * (attempt % 2)
+        if attempt % 2 == 1 and done:
+            continue
         out = ra if axis == 0 else rb
-        done = False
-        for sign in (1.0, -1.0):
-            h = sign * STEP
-            trial = tilted(d, tangent, h if axis == 0 else 0.0, 0.0 if axis == 0 else h)
-            if exit_ray(s, body, origin, trial, code, p, q):
-                residual(to_point, goal, axes, p, q, out)
-                out[0], out[1] = (out[0] - r[0]) / h, (out[1] - r[1]) / h
-                done = True
-                break
-        if not done:
+        h = sign * STEP
+        tilt(d, tangent, h * (1 - axis), h * axis, trial)
+        done = exit_ray(s, body, origin, trial, code, p, q)
+        if done:
+            residual(to_point, goal, axes, p, q, out)
+            out[0], out[1] = (out[0] - r[0]) / h, (out[1] - r[1]) / h
+        elif sign < 0.0:
             return False
     return True
 
@@ -144,17 +169,20 @@ def slope_along(s, body, origin, d, tangent, code, to_point, goal, axes, r, ra, 
 @kernel
 def between(p1, d1, p2, d2, mid):
     """Midpoint of the shortest segment between two lines into mid; returns its length."""
-    w = p1 - p2
-    b = np.dot(d1, d2)
-    d, e = np.dot(d1, w), np.dot(d2, w)
+    w = np.empty(3)
+    for k in range(3):
+        w[k] = p1[k] - p2[k]
+    b, d, e = dot(d1, d2), dot(d1, w), dot(d2, w)
     under = 1.0 - b * b
     if under < 1e-15:
         return math.inf
     t, u = (b * e - d) / under, (e - b * d) / under
-    a1, a2 = p1 + t * d1, p2 + u * d2
-    mid[:] = 0.5 * (a1 + a2)
-    gap = a1 - a2
-    return math.sqrt(np.dot(gap, gap))
+    gap = 0.0
+    for k in range(3):
+        one, other = p1[k] + t * d1[k], p2[k] + u * d2[k]
+        mid[k] = 0.5 * (one + other)
+        gap += (one - other) ** 2
+    return math.sqrt(gap)
 
 
 @kernel
@@ -162,28 +190,38 @@ def centred_sight(s, body, origin, start, code, w, right, distance_mm, half_base
     """The scope centred on a target's image, seen along w: axis path, both pupils, C and A.
 
     The axis is the path that leaves in exactly w; C is the axis point nearest to A; iterated until C
-    moves less than 1e-9 mm. dirs, points, outs (3, 3): first direction, last point, last direction for
-    left, right, middle. Fills centre and apparent (3,). Returns (code, gap, which): FOUND, and the
-    stereo gap; else the failing path: 0 left, 1 right, 2 axis.
+    moves less than 1e-10 mm. dirs, points, outs (3, 3): first direction, last point, last direction for
+    left, right, middle. Fills centre and apparent (3,). Returns (status, gap): FOUND, and the stereo gap.
     """
-    if aim(s, body, origin, start, code, False, w, 1e-13, dirs[2], points[2], outs[2]) != FOUND:
-        return NOT_CONVERGED, math.inf, 2
-    centre[:] = origin
-    dirs[0], dirs[1] = dirs[2], dirs[2]
-    gap = math.inf
-    for _ in range(60):
-        for eye in range(2):
-            side = half_base_mm * (-1.0 if eye == 0 else 1.0)
-            pupil = centre + distance_mm * w + side * right
-            if aim(s, body, origin, dirs[eye].copy(), code, True, pupil, 1e-10, dirs[eye], points[eye], outs[eye]) != FOUND:
-                return NOT_CONVERGED, math.inf, eye
-        gap = between(points[0], outs[0], points[1], outs[1], apparent)
-        moved_to = points[2] + np.dot(apparent - points[2], w) * w
-        step = moved_to - centre
-        centre[:] = moved_to
-        if math.sqrt(np.dot(step, step)) < 1e-10:
-            return FOUND, gap, -1
-    return NOT_CONVERGED, gap, 2
+    copy(origin, centre, 1.0)
+    goal, gap = np.empty(3), math.inf
+    for turn in range(1 + 2 * MAX_CENTRINGS):
+        # The axis first, then left and right in turn.
+        which = 2 if turn == 0 else (turn - 1) % 2
+        if turn == 0:
+            copy(w, goal, 1.0)
+            copy(start, dirs[2], 1.0)
+        else:
+            side = half_base_mm * (2.0 * which - 1.0)
+            for k in range(3):
+                goal[k] = centre[k] + distance_mm * w[k] + side * right[k]
+            if turn < 3:
+                copy(dirs[2], dirs[which], 1.0)
+        if aim(s, body, origin, dirs[which], code, turn > 0, goal, 1e-10 if turn else 1e-13, dirs[which], points[which],
+               outs[which]) != FOUND:
+            return NOT_CONVERGED, math.inf
+        if which == 1:
+            gap = between(points[0], outs[0], points[1], outs[1], apparent)
+            along, step = 0.0, 0.0
+            for k in range(3):
+                along += (apparent[k] - points[2, k]) * w[k]
+            for k in range(3):
+                moved_to = points[2, k] + along * w[k]
+                step += (moved_to - centre[k]) ** 2
+                centre[k] = moved_to
+            if math.sqrt(step) < 1e-10:
+                return FOUND, gap
+    return NOT_CONVERGED, gap
 
 
 @kernel
@@ -230,10 +268,10 @@ def sweep(s, body, origin, code, first, outward, sights, rights, distance_mm, ha
             row = nearest_start(first, outward, w, widest_cos, failed[:attempt])
             if row < 0:
                 break
-            status, _, _ = centred_sight(s, body, origin, first[row].copy(), code, w, rights[i], distance_mm,
+            status, _ = centred_sight(s, body, origin, first[row], code, w, rights[i], distance_mm,
                                          half_base_mm, dirs, points, outs, centre, apparent)
             if status == FOUND:
                 reached = min(power_of(s, body, origin, dirs[0]), power_of(s, body, origin, dirs[1]))
                 power[i] = max(power[i], reached)
                 break
-            failed[attempt] = first[row]
+            copy(first[row], failed[attempt], 1.0)

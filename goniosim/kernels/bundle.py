@@ -11,7 +11,7 @@ import math
 
 import numpy as np
 
-from . import kernel
+from . import kernel, small_kernel
 from .arrays import (ABSORBED, ABSORPTION, AIR_BODY, BEYOND, BODY, CHECK_FROM, CHECK_TO, COATED, EXT, FACE, FINISH, GROUND, INDEX,
                      INTENDED, IS_OPAQUE, KIND, LEFT, LOST, MAX_FACES, MIRROR, MISSED, NEAR_FROM, NEAR_TO, OPAQUE,
                      OPAQUE_BODY, ORG, REFLECTANCE, ROT, SIDE_FROM, SIDE_TO, SIGN, TOO_MANY_FACES, TURNED)
@@ -20,7 +20,7 @@ from .shapes import PLANE, T_MIN, crossing, normal_at, side_of
 TOUCH = 1e-9  # mm; a point this near to a bounding face still counts as inside
 
 
-@kernel
+@small_kernel
 def into_face(q, f, x, y, z):
     """A vector of the eye frame in the axes of a turned face."""
     return (q[f, ROT] * x + q[f, ROT + 3] * y + q[f, ROT + 6] * z,
@@ -28,7 +28,7 @@ def into_face(q, f, x, y, z):
             q[f, ROT + 2] * x + q[f, ROT + 5] * y + q[f, ROT + 8] * z)
 
 
-@kernel
+@small_kernel
 def face_crossing(q, f, pieces, p0, p1, p2, d0, d1, d2, want, limit):
     """Distance along a ray of the eye frame to the wanted crossing with face f."""
     if q[f, KIND] == PLANE and q[f, EXT + 1] == math.inf:
@@ -46,7 +46,7 @@ def face_crossing(q, f, pieces, p0, p1, p2, d0, d1, d2, want, limit):
     return crossing(q, f, pieces, x, y, z, d0, d1, d2, want, limit)
 
 
-@kernel
+@small_kernel
 def local_point(q, f, p0, p1, p2):
     """A point of the eye frame in the frame of face f."""
     x, y, z = p0 - q[f, ORG], p1 - q[f, ORG + 1], p2 - q[f, ORG + 2]
@@ -131,12 +131,18 @@ def locate(s, p0, p1, p2, d0, d1, d2):
     return np.int64(AIR_BODY) if row >= 0 and entry < best - TOUCH else body
 
 
-@kernel
+@small_kernel
 def unpolarised_transmittance(n1, n2, cos1, cos2):
     """Fresnel's power transmittance of unpolarised light at a clear face."""
     rs = (n1 * cos1 - n2 * cos2) / (n1 * cos1 + n2 * cos2)
     rp = (n2 * cos1 - n1 * cos2) / (n2 * cos1 + n1 * cos2)
     return 1.0 - 0.5 * (rs * rs + rp * rp)
+
+
+@small_kernel
+def angle_of(sine):
+    """Headroom in radians from its sine; infinite stays infinite."""
+    return math.asin(sine) if sine < 1.0 else sine
 
 
 @kernel
@@ -156,12 +162,12 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
             row, t = way_in(q, pieces, sides, bodies, checks, air, p0, p1, p2, d0, d1, d2)
             if row < 0:
                 status = LEFT if met > 0 else MISSED
-                return status, last, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, met, stray
+                return status, last, p0, p1, p2, d0, d1, d2, power, angle_of(headroom), headroom_face, code, met, stray
             n1 = 1.0
         else:
             row, t = way_out(q, pieces, sides, bodies, body, p0, p1, p2, d0, d1, d2)
             if row < 0:
-                return LOST, last, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, met, stray
+                return LOST, last, p0, p1, p2, d0, d1, d2, power, angle_of(headroom), headroom_face, code, met, stray
             n1 = optics[body, INDEX]
             if optics[body, ABSORPTION] > 0.0:
                 power *= math.exp(-optics[body, ABSORPTION] * max(t, 0.0))
@@ -177,7 +183,7 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
                 path_face[met] = 2 * f
                 path_point[met, 0], path_point[met, 1], path_point[met, 2] = p0, p1, p2
                 path_dir[met, 0], path_dir[met, 1], path_dir[met, 2] = d0, d1, d2
-            return ABSORBED, f, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, met + 1, stray
+            return ABSORBED, f, p0, p1, p2, d0, d1, d2, power, angle_of(headroom), headroom_face, code, met + 1, stray
         g0, g1, g2 = face_normal(q, f, pieces, p0, p1, p2)
         cos1 = g0 * d0 + g1 * d1 + g2 * d2
         if cos1 < 0.0:
@@ -196,7 +202,9 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
                 stray += 1 - int(q[f, INTENDED])
             else:
                 if n1 > n2:
-                    room = math.asin(n2 / n1) - math.asin(min(sin1, 1.0))
+                    # sin(critical - incidence): grows with the headroom, so the least of it tells the face.
+                    critical = n2 / n1
+                    room = critical * cos1 - sin1 * math.sqrt(1.0 - critical * critical)
                     if room < headroom:
                         headroom, headroom_face = room, f
                 cos2 = math.sqrt(cos2_squared)
@@ -216,7 +224,7 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
             path_face[met] = 2 * f + (1 if reflect else 0)
             path_point[met, 0], path_point[met, 1], path_point[met, 2] = p0, p1, p2
             path_dir[met, 0], path_dir[met, 1], path_dir[met, 2] = d0, d1, d2
-    return (TOO_MANY_FACES, last, p0, p1, p2, d0, d1, d2, power, headroom, headroom_face, code, MAX_FACES, stray)
+    return (TOO_MANY_FACES, last, p0, p1, p2, d0, d1, d2, power, angle_of(headroom), headroom_face, code, MAX_FACES, stray)
 
 
 @kernel

@@ -11,7 +11,7 @@ from __future__ import annotations
 
 import math
 
-from . import kernel
+from . import kernel, small_kernel
 from .arrays import EXT, KIND, PAR, PIECE_FROM, PIECE_TO
 
 T_MIN = -1e-9  # mm; a start that rounding put just outside still counts
@@ -21,7 +21,7 @@ FAR_MM = 60.0  # a toric face is searched for this far about its vertex
 PLANE, CONIC, CYLINDER, CONE, PROFILE, RING_ARC, ROUND_CORNEA, TORIC = range(8)
 
 
-@kernel
+@small_kernel
 def quadratic_crossing(a, b, c, want):
     """Root of a t^2 + 2 b t + c where the gradient along the ray, a t + b, has the wanted sign."""
     under = b * b - a * c
@@ -36,7 +36,7 @@ def quadratic_crossing(a, b, c, want):
     return (-b + s) / a
 
 
-@kernel
+@small_kernel
 def conic_crossing(c, k, px, py, pz, dx, dy, dz, want):
     """Crossing of the cap c (r^2 + k z^2) + 2 z = 0 on the vertex's side of its centre."""
     a = c * (dx * dx + dy * dy + k * dz * dz)
@@ -48,7 +48,7 @@ def conic_crossing(c, k, px, py, pz, dx, dy, dz, want):
     return t
 
 
-@kernel
+@small_kernel
 def radial_interval(px, py, dx, dy, radius):
     """The t between which a ray's distance from the z axis is at most radius; empty: (1, 0)."""
     a = dx * dx + dy * dy
@@ -69,7 +69,7 @@ def radial_interval(px, py, dx, dy, radius):
     return (c / a / high if high != 0.0 else 0.0), high
 
 
-@kernel
+@small_kernel
 def slab_interval(p, d, low, high):
     """The t between which p + t d lies between low and high; empty: (1, 0)."""
     if abs(d) < 1e-300:
@@ -147,37 +147,17 @@ def first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, wan
     """First wanted crossing of g in [t0, t1]; infinite: none.
 
     Steps as long as a bound on g'' shows that none is jumped over; at the shortest step one pair of crossings
-    between samples is still found, where the slope of g turns.
+    between samples is still found, where the slope of g turns. Written with one call of each helper, because
+    every call is compiled in place.
     """
-    if t0 < T_MIN:
-        t0 = T_MIN
     if not t0 < t1:
         return math.inf
     at, shortest, h = t0, (t1 - t0) / SAMPLES, t1 - t0
     if bend == math.inf:
         h = shortest
+    low, high = t1, t1
     ga, sa = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, at)
     ga, sa = want * ga, want * sa
-    if bend == CONVEX:
-        gb, sb = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, t1)
-        gb, sb = want * gb, want * sb
-        # Along any ray g is convex: it rises through zero at most once, and falls through it at most once.
-        if want > 0.0:
-            if ga <= 0.0:
-                if gb <= 0.0:
-                    return math.inf
-                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, t1)
-            if sa >= 0.0 or sb <= 0.0:
-                return math.inf
-        else:
-            if ga > 0.0:
-                return math.inf
-            if gb > 0.0:
-                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, t1)
-            if sa <= 0.0 or sb >= 0.0:
-                return math.inf
-        bend = math.inf
-        h = shortest
     while at < t1:
         to = at + h
         if to > t1 - 0.01 * shortest:
@@ -185,6 +165,16 @@ def first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, wan
         gb, sb = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, to)
         gb, sb = want * gb, want * sb
         below, above = ga <= 0.0 and gb <= 0.0, ga > 0.0 and gb > 0.0
+        if bend == CONVEX:
+            # Along any ray g is convex: it rises through zero at most once, and falls through it at most once.
+            if (want > 0.0 and (below or (ga > 0.0 and (sa >= 0.0 or sb <= 0.0)))) or (
+                    want < 0.0 and (ga > 0.0 or (below and (sa <= 0.0 or sb >= 0.0)))):
+                return math.inf
+            if ga <= 0.0 and gb > 0.0:
+                low, high = at, to
+                break
+            bend, h = math.inf, shortest
+            continue
         if below and surely_below(ga, sa, gb, sb, bend, to - at):
             h *= 2.0
         elif above and surely_below(-ga, -sa, -gb, -sb, bend, to - at):
@@ -193,42 +183,45 @@ def first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, wan
             h *= 0.5
             continue
         elif ga <= 0.0 and gb > 0.0:
-            return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, to)
-        elif below and sa > 0.0 and sb < 0.0:
-            top = turning_point(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, to)
-            g, _ = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, top)
-            if want * g > 0.0:
-                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, at, top)
-        elif above and sa < 0.0 and sb > 0.0:
-            # want g dips between the samples: it may cross down and up again inside.
-            dip = turning_point(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, -want, at, to)
-            g, _ = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, dip)
-            if want * g <= 0.0:
-                return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, dip, to)
+            low, high = at, to
+            break
+        elif (below and sa > 0.0 and sb < 0.0) or (above and sa < 0.0 and sb > 0.0):
+            # Between the samples g may reach over zero, or dip below it, and come back.
+            sense = want if below else -want
+            turn = turning_point(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, sense, at, to)
+            g, _ = sag_value(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, turn)
+            if below and want * g > 0.0:
+                low, high = at, turn
+                break
+            if above and want * g <= 0.0:
+                low, high = turn, to
+                break
         at, ga, sa = to, gb, sb
-    return math.inf
+    if low == high:
+        return math.inf
+    return refine(kind, q, f, r0, a, b, c, d, px, py, pz, dx, dy, dz, want, low, high)
 
 
 @kernel
-def ring_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, inner, outer, low, high, limit):
-    """First wanted crossing with a surface between two radii and two heights, no farther than limit."""
+def ring_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, inner, outer, low, high, since, limit):
+    """First wanted crossing with a surface between two radii and two heights, from since to limit."""
     za, zb = slab_interval(pz, dz, low, high)
-    if za > zb or zb < T_MIN or za > limit:
-        return math.inf
     oa, ob = radial_interval(px, py, dx, dy, outer)
-    t0, t1 = max(za, oa), min(min(zb, ob), limit)
-    if t0 > t1 or t1 < T_MIN:
+    t0, t1 = max(max(za, oa), since), min(min(zb, ob), limit)
+    if not t0 < t1:
         return math.inf
+    middle, resume = t1, t1
     if inner > 0.0:
         ia, ib = radial_interval(px, py, dx, dy, inner)
         if ia < ib and ib > t0 and ia < t1:
             # The ray dives inside the inner radius: search before, then after.
-            if ia > t0:
-                t = first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, t0, ia)
-                if t < math.inf:
-                    return t
-            t0 = ib
-    return first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, t0, t1)
+            middle, resume = ia, ib
+    for part in range(2):
+        start, end = (t0, middle) if part == 0 else (resume, t1)
+        t = first_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, start, end)
+        if t < math.inf:
+            return t
+    return math.inf
 
 
 @kernel
@@ -283,6 +276,49 @@ def periphery_height(a, b, r, join, mode, at, value, edge):
 
 
 @kernel
+def pieced_crossing(kind, q, f, pieces, px, py, pz, dx, dy, dz, want, limit):
+    """First wanted crossing with a surface that is searched for along the ray: cubic pieces, torus, toric cornea."""
+    best = limit
+    first, last = int(q[f, PIECE_FROM]), int(q[f, PIECE_TO])
+    r0, a, b, c, d, bend = 0.0, 0.0, 0.0, 0.0, 0.0, math.inf
+    inner, outer, low, high = q[f, EXT], q[f, EXT + 1], q[f, EXT + 2], q[f, EXT + 3]
+    if kind == TORIC:
+        inner, outer, low, high = 0.0, min(outer, FAR_MM), -FAR_MM, FAR_MM
+    if kind == TORIC or kind == RING_ARC:
+        first, last = 0, 1
+    elif kind == ROUND_CORNEA:
+        t = conic_crossing(q[f, PAR], q[f, PAR + 1], px, py, pz, dx, dy, dz, want)
+        if t < math.inf:
+            x, y = px + t * dx, py + t * dy
+            join2 = q[f, PAR + 2] * q[f, PAR + 2]
+            if x * x + y * y <= join2:
+                if px * px + py * py <= join2:
+                    # Start and hit lie within the centre, so the way between them does too.
+                    return t
+                best = min(best, t)
+    found = best if best < limit else math.inf
+    for i in range(first, last):
+        if kind == PROFILE or kind == ROUND_CORNEA:
+            r0, a, b, c, d, bend = pieces[i, 0], pieces[i, 2], pieces[i, 3], pieces[i, 4], pieces[i, 5], pieces[i, 8]
+            inner, outer, low, high = r0, pieces[i, 1], pieces[i, 6], pieces[i, 7]
+        since = T_MIN
+        for _ in range(3):
+            t = ring_crossing(kind, q, f, r0, a, b, c, d, bend, px, py, pz, dx, dy, dz, want, inner, outer, low, high,
+                              since, best)
+            if kind != RING_ARC or not t < math.inf:
+                break
+            x, y, z = px + t * dx, py + t * dy, pz + t * dz
+            angle = math.atan2(z, math.sqrt(x * x + y * y) - q[f, PAR])
+            if q[f, PAR + 2] - 1e-9 <= angle <= q[f, PAR + 3] + 1e-9:
+                break
+            since = t + 1e-9  # the hit lies on the rest of the torus: go on behind it
+            t = math.inf
+        if t < math.inf:
+            best, found = t, t
+    return found
+
+
+@kernel
 def crossing(q, f, pieces, px, py, pz, dx, dy, dz, want, limit):
     """Distance to the first wanted crossing with face f, in the face's own frame; infinite: none.
 
@@ -305,27 +341,8 @@ def crossing(q, f, pieces, px, py, pz, dx, dy, dz, want, limit):
                                px * px + py * py - r * r, want)
         if t < math.inf and r + m * t * dz < 0.0:
             return math.inf
-    elif kind == RING_ARC:
-        return arc_crossing(q, f, px, py, pz, dx, dy, dz, want, limit)
-    elif kind == TORIC:
-        return ring_crossing(kind, q, f, 0.0, 0.0, 0.0, 0.0, 0.0, math.inf, px, py, pz, dx, dy, dz, want, 0.0,
-                             min(q[f, EXT + 1], FAR_MM), -FAR_MM, FAR_MM, limit)
     else:
-        if kind == ROUND_CORNEA:
-            t = conic_crossing(q[f, PAR], q[f, PAR + 1], px, py, pz, dx, dy, dz, want)
-            if t < math.inf:
-                x, y = px + t * dx, py + t * dy
-                join2 = q[f, PAR + 2] * q[f, PAR + 2]
-                if x * x + y * y > join2:
-                    t = math.inf
-                elif px * px + py * py <= join2:
-                    # Start and hit lie within the centre, so the way between them does too.
-                    return t
-        for i in range(int(q[f, PIECE_FROM]), int(q[f, PIECE_TO])):
-            other = ring_crossing(kind, q, f, pieces[i, 0], pieces[i, 2], pieces[i, 3], pieces[i, 4], pieces[i, 5],
-                                  pieces[i, 8], px, py, pz, dx, dy, dz, want, pieces[i, 0], pieces[i, 1], pieces[i, 6],
-                                  pieces[i, 7], min(t, limit))
-            t = min(t, other)
+        return pieced_crossing(kind, q, f, pieces, px, py, pz, dx, dy, dz, want, limit)
     if not T_MIN <= t < math.inf:
         return math.inf
     z = pz + t * dz
@@ -338,26 +355,6 @@ def crossing(q, f, pieces, px, py, pz, dx, dy, dz, want, limit):
         if rho < inner - 1e-9 or rho > outer + 1e-9:
             return math.inf
     return t
-
-
-@kernel
-def arc_crossing(q, f, px, py, pz, dx, dy, dz, want, limit):
-    """First wanted crossing with a piece of a torus, its angles respected."""
-    after = T_MIN
-    for _ in range(3):
-        # Shift the start past hits that lie on the rest of the torus.
-        t = ring_crossing(RING_ARC, q, f, 0.0, 0.0, 0.0, 0.0, 0.0, math.inf, px + after * dx, py + after * dy,
-                          pz + after * dz, dx, dy, dz, want, q[f, EXT], q[f, EXT + 1], q[f, EXT + 2], q[f, EXT + 3],
-                          limit - after)
-        if not t < math.inf:
-            return math.inf
-        t += after
-        x, y, z = px + t * dx, py + t * dy, pz + t * dz
-        angle = math.atan2(z, math.sqrt(x * x + y * y) - q[f, PAR])
-        if q[f, PAR + 2] - 1e-9 <= angle <= q[f, PAR + 3] + 1e-9:
-            return t
-        after = t + 1e-9
-    return math.inf
 
 
 @kernel

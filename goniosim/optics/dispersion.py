@@ -59,7 +59,8 @@ def _slope(x: Sequence[float], y: Sequence[float], i: int) -> float:
     """Slope at row i: weighted harmonic mean of its neighbours' slopes, 0 at a turn of the table."""
     last = len(x) - 1
     if i == 0:
-        return _end_slope(x[1] - x[0], x[2] - x[1], (y[1] - y[0]) / (x[1] - x[0]), (y[2] - y[1]) / (x[2] - x[1]))
+        return _end_slope(x[1] - x[0], x[2] - x[1], (y[1] - y[0]) / (x[1] - x[0]),
+                          (y[2] - y[1]) / (x[2] - x[1]))
     if i == last:
         return _end_slope(x[i] - x[i - 1], x[i - 1] - x[i - 2], (y[i] - y[i - 1]) / (x[i] - x[i - 1]),
                           (y[i - 1] - y[i - 2]) / (x[i - 1] - x[i - 2]))

@@ -60,7 +60,8 @@ class Powers:
 def powers(n1: float, n2: float, incidence_deg: float) -> Powers:
     """Shares of the power at an angle of incidence of 0 to below 90 degrees."""
     a = amplitudes(n1, n2, incidence_deg)
-    return Powers(abs(a.rs) ** 2, abs(a.rp) ** 2, a.power_factor * abs(a.ts) ** 2, a.power_factor * abs(a.tp) ** 2)
+    return Powers(abs(a.rs) ** 2, abs(a.rp) ** 2, a.power_factor * abs(a.ts) ** 2,
+                  a.power_factor * abs(a.tp) ** 2)
 
 
 def normal_reflectance(n1: float, n2: float) -> float:

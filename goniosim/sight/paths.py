@@ -161,7 +161,7 @@ def centred(scene: CompiledScene, wavelength_nm: float, fan: Fan, group: int, sc
     dirs, points, outs = np.empty((3, 3)), np.empty((3, 3)), np.empty((3, 3))
     centre, apparent = np.empty(3), np.empty(3)
     for start in starts_of(fan, group, fan.outward[fan.groups[group]] @ scope.sight):
-        status, gap, _ = centred_sight(
+        status, gap = centred_sight(
             scene.arrays(wavelength_nm), fan.body, fan.origin_mm, np.ascontiguousarray(start), group, scope.sight,
             scope.right, scope.working_distance_mm, 0.5 * scope.stereo_base_mm, dirs, points, outs, centre, apparent)
         if status == FOUND:

@@ -31,7 +31,8 @@ def face(name: str, shape: Shape, z_mm: float = 0.0, lean_deg: float = 0.0, cloc
 
 def scene_of(faces: Sequence[Face], *bodies: tuple[str, float, Sequence[tuple[str, str]]]) -> CompiledScene:
     """Faces, and bodies as (name, index, sides), ready to trace."""
-    return CompiledScene(tuple(faces), tuple(Body(name, f"{index!r}", tuple(sides)) for name, index, sides in bodies),
+    return CompiledScene(tuple(faces), tuple(Body(name, f"{index!r}", tuple(sides)) for name, index,
+                                             sides in bodies),
                          {f"{index!r}": plain(index) for _, index, _ in bodies})
 
 
@@ -69,4 +70,5 @@ def axis_crossing_z(points_mm: np.ndarray, directions: np.ndarray) -> np.ndarray
 
 def passed_all(traces: Traces, faces: int) -> np.ndarray:
     """Rays that went through so many faces and nothing else, (n,) bool."""
-    return np.array([len(path) == faces and all(event == "through" for _, event in path) for path in traces.path_faces])
+    return np.array([len(path) == faces and all(event == "through" for _,
+                                                event in path) for path in traces.path_faces])

@@ -77,9 +77,8 @@ def run_check(check: Check) -> Result:
     if len(got) != len(expected):
         return Result(check, False, got, None, measured.rays, f"gave {len(got)} numbers for {len(expected)}")
     above = [ours - theirs for ours, theirs in zip(got, expected)]
-    off = max(abs(difference) for difference in above)
-    # Written so that NaN fails.
-    ok = {EQUALS: off <= check.tolerance,
+    # Written so that NaN among the numbers fails.
+    ok = {EQUALS: all(abs(difference) <= check.tolerance for difference in above),
           ABOVE: all(difference >= check.tolerance for difference in above),
           BELOW: all(-difference >= check.tolerance for difference in above)}[check.rule]
-    return Result(check, ok and off == off, got, off, measured.rays)
+    return Result(check, ok, got, max(map(abs, above), key=lambda off: (off != off, off)), measured.rays)

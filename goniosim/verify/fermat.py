@@ -60,4 +60,5 @@ def _tangents(face: Face, point_mm: np.ndarray) -> tuple[np.ndarray, np.ndarray]
 
 def has_heights(face: Face) -> bool:
     """Whether a face is a height over its own x and y, as planes, caps and corneas are."""
-    return face.shape.name in ("plane", "sphere", "conic", "toric") or type(face.shape).__name__ == "CornealSurface"
+    return face.shape.name in ("plane", "sphere", "conic",
+                               "toric") or type(face.shape).__name__ == "CornealSurface"

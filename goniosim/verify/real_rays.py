@@ -14,7 +14,8 @@ from ..sight.scene import Scene
 from ..sight.target import Target, target_of
 
 SEED = 7
-LENS_SCENES = ("right-eye-temporal", "dome", "one-mirror", "four-mirror", "twin-mirror", "total-reflection", "saline-pool")
+LENS_SCENES = ("right-eye-temporal", "dome", "one-mirror", "four-mirror", "twin-mirror", "total-reflection",
+               "saline-pool")
 """Shipped scenes, one for each kind of lens."""
 
 

@@ -12,7 +12,8 @@ from ..shipped import shipped_folder
 @lru_cache(maxsize=None)
 def shipped_medium(name: str) -> Medium:
     """A medium of plugins/media/."""
-    return medium_from_mapping(load_file("medium", shipped_folder("plugins") / "media" / f"{name}.yaml").values)
+    return medium_from_mapping(load_file("medium",
+                                         shipped_folder("plugins") / "media" / f"{name}.yaml").values)
 
 
 def indices(name: str, *wavelengths_nm: float) -> tuple[float, ...]:

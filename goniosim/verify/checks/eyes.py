@@ -44,6 +44,6 @@ CHECKS = [
           lambda: thickening_percent(1.0)),
     Check("default eye: the cornea thickens by 12 to 32 % at 5 mm", SPECULAR, VERIFIED, 22.0, 10.0, "%",
           lambda: thickening_percent(5.0)),
-    Check("default eye: within two deviations of the radial law out to 4 mm", SPECULAR, VERIFIED, 0.0, 0.40 * 16.0, "%",
-          off_thickness_law),
+    Check("default eye: within two deviations of the radial law out to 4 mm", SPECULAR, VERIFIED, 0.0,
+          0.40 * 16.0, "%", off_thickness_law),
 ]

@@ -11,7 +11,7 @@ from ...frames import rotation_about
 from ...optics.fresnel import powers
 from ...optics.refraction import angle_deg
 from ..blocks import disc, face, followed, layers, passed_all, scene_of
-from ..check import COMPUTED, EXACT, MEMORY, VERIFIED, Check, Measured
+from ..check import ABOVE, COMPUTED, EXACT, MEMORY, PRACTICE, VERIFIED, Check, Measured
 
 UP = np.array([0.0, 0.0, 1.0])
 SEED = 20
@@ -39,7 +39,7 @@ def random_layers() -> Measured:
         if not passed_all(traces, len(indices)).all():
             return Measured(np.inf, rays)
         rays += 1
-        worst = max(worst, np.abs(traces.directions[0, :2] - indices[0] * direction[:2]).max())
+        worst = np.max([worst, np.abs(traces.directions[0, :2] - indices[0] * direction[:2]).max()])
     return Measured(worst, rays)
 
 
@@ -63,14 +63,15 @@ def slab_shift_error() -> Measured:
         a, b = np.radians(angle), np.arcsin(np.sin(np.radians(angle)) / index)
         sideways = np.linalg.norm(np.cross(traces.points_mm[0], direction))
         turned = np.abs(traces.directions[0] - direction).max()
-        worst = max(worst, abs(sideways - thickness * np.sin(a - b) / np.cos(b)), turned)
+        worst = np.max([worst, abs(sideways - thickness * np.sin(a - b) / np.cos(b)), turned])
     return Measured(worst, len(angles))
 
 
 def prism(apex_deg: float, index: float):
     """A prism about z: faces leaned apart, base away from +y."""
     return scene_of([face("first", Plane(), 0.0, 180.0 - apex_deg / 2.0, 12.0),
-                     face("second", Plane(), 0.0, apex_deg / 2.0, 12.0), face("rim", Cylinder(60.0), finish="ground")],
+                     face("second", Plane(), 0.0, apex_deg / 2.0, 12.0), face("rim", Cylinder(60.0),
+                                                                              finish="ground")],
                     ("glass", index, (("first", "behind"), ("second", "behind"), ("rim", "behind"))))
 
 
@@ -90,6 +91,14 @@ def least_traced_rad(index: float) -> Measured:
     """Least of the traced deviations, in radians."""
     deviations = traced_deviations(index)
     return Measured(np.radians(deviations.min()), len(deviations))
+
+
+def bent_toward_base() -> Measured:
+    """Least part toward the base of the change of direction by a 60 deg prism in air."""
+    directions = np.array([[0.0, np.sin(a), np.cos(a)] for a in np.radians(np.arange(0.0, 40.0))])
+    traces = followed(prism(60.0, 1.525), np.array([0.0, -10.0, 0.0]) - 40.0 * directions, directions)
+    turned = (directions - traces.directions)[passed_all(traces, 2), 1]  # the base lies toward -y
+    return Measured(turned.min(), len(turned))
 
 
 def mirror_turned(turn_deg: float) -> Measured:
@@ -129,7 +138,7 @@ def power_off_fresnel() -> Measured:
         for before, after in zip(indices, (*indices[1:], 1.0)):
             expected *= powers(before, after, inside).transmitted
             inside = np.degrees(np.arcsin(before * np.sin(np.radians(inside)) / after))
-        worst = max(worst, abs(traces.throughput[0] - expected))
+        worst = np.max([worst, abs(traces.throughput[0] - expected)])
     return Measured(worst, len(angles))
 
 
@@ -149,20 +158,22 @@ CHECKS = [
     Check("traced: layers 1.60/1.40/1.20/air, 30.0 deg in the first", LAYERS, VERIFIED, 53.1, 0.05, "deg",
           textbook_layers),
     Check("traced: 200 random stacks keep n sin a", INVARIANT, EXACT, 0.0, 1e-14, "", random_layers),
-    Check("traced: aqueous under cornea and PMMA with a parallel air face lets out no more than without them", INVARIANT,
-          COMPUTED, 48.46, 0.005, "deg", partial(widest_escape_deg, (1.336, 1.376, 1.4906))),
+    Check("traced: aqueous under cornea and PMMA with a parallel air face lets out no more than without them",
+          INVARIANT, COMPUTED, 48.46, 0.005, "deg", partial(widest_escape_deg, (1.336, 1.376, 1.4906))),
     Check("traced: the same under any lens index", INVARIANT, COMPUTED, 48.46, 0.005, "deg",
           partial(widest_escape_deg, (1.336, 1.376, 1.7))),
-    Check("traced: a slab in air shifts a ray by d sin(a - b) / cos b and turns it by nothing", "textbook standard",
-          EXACT, 0.0, 1e-12, "mm", slab_shift_error),
-    Check("traced: least deviation of a 60 deg prism of 1.525", "textbook solution, prism of 60 deg", VERIFIED, 0.6872,
-          1e-4, "rad", partial(least_traced_rad, 1.525)),
-    Check("traced: least deviation of a 60 deg prism of 1.535", "2 asin(n/2) - 60 deg", COMPUTED, 0.70267, 6e-6, "rad",
-          partial(least_traced_rad, 1.535)),
-    Check("traced: a prism with air on both sides of its faces turns nothing", "Snell's law", EXACT, 0.0, 1e-15, "",
-          index_one_changes_nothing),
-    Check("traced: turning a mirror by 7 deg turns the ray by 14", "textbook standard", MEMORY, 14.0, 1e-12, "deg",
-          partial(mirror_turned, 7.0)),
+    Check("traced: a slab in air shifts a ray by d sin(a - b) / cos b and turns it by nothing",
+          "textbook standard", EXACT, 0.0, 1e-12, "mm", slab_shift_error),
+    Check("traced: least deviation of a 60 deg prism of 1.525", "textbook solution, prism of 60 deg",
+          VERIFIED, 0.6872, 1e-4, "rad", partial(least_traced_rad, 1.525)),
+    Check("traced: least deviation of a 60 deg prism of 1.535", "2 asin(n/2) - 60 deg", COMPUTED, 0.70267,
+          6e-6, "rad", partial(least_traced_rad, 1.535)),
+    Check("traced: light bends toward a prism's base", "common practice", PRACTICE, 0.0, 0.1, "",
+          bent_toward_base, ABOVE),
+    Check("traced: a prism with air on both sides of its faces turns nothing", "Snell's law", EXACT, 0.0,
+          1e-15, "", index_one_changes_nothing),
+    Check("traced: turning a mirror by 7 deg turns the ray by 14", "textbook standard", MEMORY, 14.0, 1e-12,
+          "deg", partial(mirror_turned, 7.0)),
     Check("traced: two mirrors at 25 deg deviate by 50, whatever the direction", "textbook standard", MEMORY,
           (50.0, 50.0), 1e-11, "deg", partial(two_mirrors, 25.0)),
     Check("traced: throughput is the product of Fresnel transmittances", "Fresnel", EXACT, 0.0, 1e-14, "",

@@ -34,7 +34,8 @@ class FrontEye:
         """Cornea and aqueous down to an absorbing plane at the stop."""
         return scene_of(
             [face("front", Conic(*self.front)), face("back", Conic(*self.back), -self.thickness_mm),
-             face("stop", Plane(), -self.stop_mm, finish="ground"), face("rim", Cylinder(6.39), finish="ground")],
+             face("stop", Plane(), -self.stop_mm, finish="ground"), face("rim", Cylinder(6.39),
+                                                                         finish="ground")],
             ("cornea", self.cornea, (("front", "behind"), ("back", "ahead"), ("rim", "behind"))),
             ("aqueous", self.aqueous, (("back", "behind"), ("stop", "ahead"), ("rim", "behind"))))
 
@@ -88,7 +89,8 @@ def _outline(front: FrontEye, view_deg: float, wanted: np.ndarray,
 
     uv = _solve(met, wanted, apparent @ np.column_stack([in_plane, across]))
     along = apparent @ toward
-    return (SeenPupil(np.ptp(uv[:-1, 0]) / (2.0 * STOP_RADIUS_MM), np.ptp(uv[:-1, 1]) / (2.0 * STOP_RADIUS_MM),
+    return (SeenPupil(np.ptp(uv[:-1, 0]) / (2.0 * STOP_RADIUS_MM), np.ptp(uv[:-1,
+                                                                             1]) / (2.0 * STOP_RADIUS_MM),
                       _axis_depth(uv[-1, 0] * in_plane, toward, front), rays),
             uv[:, :1] * in_plane + uv[:, 1:] * across + along[:, None] * toward)
 
@@ -139,12 +141,14 @@ TABLE = "a separate ray trace: far viewer, real stop of 4.0 mm, outline every 5 
 CHECKS = [
     Check("measured pupil ratio at -80 to 80 deg, its own formula", MATHUR, COMPUTED,
           (0.3926, 0.6522, 0.8490, 0.9642, 0.9900, 0.9866, 0.9142, 0.7538, 0.5209, 0.2379), 6e-5, "",
-          lambda: [measured_ratio(a) for a in (-80.0, -60.0, -40.0, -20.0, -5.3, 0.0, 20.0, 40.0, 60.0, 80.0)]),
-    Check("traced pupil ratio of three eyes against the measured curve about its peak, to 60 deg", MATHUR, VERIFIED, 0.0,
-          0.022, "", partial(off_measured, (0, 10, 20, 30, 40, 50, 60))),
+          lambda: [measured_ratio(a) for a in (-80.0, -60.0, -40.0, -20.0, -5.3, 0.0, 20.0, 40.0, 60.0,
+                                               80.0)]),
+    Check("traced pupil ratio of three eyes against the measured curve about its peak, to 60 deg", MATHUR,
+          VERIFIED, 0.0, 0.022, "", partial(off_measured, (0, 10, 20, 30, 40, 50, 60))),
     Check("the same at 70 and 80 deg", MATHUR, VERIFIED, 0.0, 0.047, "", partial(off_measured, (70, 80))),
     Check("Navarro: pupil ratio at 0 to 80 deg", TABLE, COMPUTED,
-          (1.0, 0.9876, 0.9509, 0.8915, 0.8120, 0.7154, 0.6046, 0.4838, 0.3559), 6e-5, "", partial(table, "Navarro", "ratio")),
+          (1.0, 0.9876, 0.9509, 0.8915, 0.8120, 0.7154, 0.6046, 0.4838, 0.3559), 6e-5, "", partial(table,
+          "Navarro", "ratio")),
     Check("Navarro: apparent over real diameter in the plane of the view", TABLE, COMPUTED,
           (1.1225, 1.1099, 1.0726, 1.0120, 0.9303, 0.8302, 0.7142, 0.5846, 0.4426), 6e-5, "",
           partial(table, "Navarro", "tangential")),
@@ -155,7 +159,8 @@ CHECKS = [
           (3.0424, 3.0358, 3.0155, 2.9800, 2.9269, 2.8522, 2.7502, 2.6125, 2.4271), 6e-5, "mm",
           partial(table, "Navarro", "chief_mm")),
     Check("Le Grand: pupil ratio at 0 to 80 deg", TABLE, COMPUTED,
-          (1.0, 0.9876, 0.9511, 0.8922, 0.8135, 0.7184, 0.6097, 0.4907, 0.3623), 6e-5, "", partial(table, "Le Grand", "ratio")),
+          (1.0, 0.9876, 0.9511, 0.8922, 0.8135, 0.7184, 0.6097, 0.4907, 0.3623), 6e-5, "", partial(table,
+          "Le Grand", "ratio")),
     Check("Le Grand: where the chief ray seems to cross the axis", TABLE, COMPUTED,
           (3.0376, 3.0311, 3.0114, 2.9772, 2.9266, 2.8568, 2.7640, 2.6438, 2.4913), 6e-5, "mm",
           partial(table, "Le Grand", "chief_mm")),

@@ -31,7 +31,7 @@ def fermat(name: str) -> Measured:
         across = np.array([face.to_local(point[None])[0, :2] for face, point in zip(faces, traced)]).ravel()
         start = across + random.uniform(-SHAKE_MM, SHAKE_MM, across.shape)
         found = Passage(rays.start_mm, end, faces, indices).shortest(start)
-        worst, done = max(worst, np.abs(found - traced).max()), done + 1
+        worst, done = np.max([worst, np.abs(found - traced).max()]), done + 1
     return Measured(worst if done else np.inf, done)
 
 
@@ -45,7 +45,7 @@ def reversed_light(name: str) -> Measured:
         if len(returned) < len(points) + 1:
             return Measured(np.inf, ray)
         expected = np.array([*points[::-1], rays.start_mm])
-        worst = max(worst, np.abs(returned[: len(expected)] - expected).max())
+        worst = np.max([worst, np.abs(returned[: len(expected)] - expected).max()])
     return Measured(worst, len(rays.first))
 
 
@@ -54,7 +54,7 @@ def etendue(name: str) -> Measured:
     rays, worst = real_rays(name, RAYS), 0.0
     index = medium_index(rays.scene, rays.start_mm + 1e-3 * rays.first[0])
     for ray in range(len(rays.first)):
-        worst = max(worst, abs(np.linalg.det(_phase_map(rays, ray, index)) - 1.0))
+        worst = np.max([worst, abs(np.linalg.det(_phase_map(rays, ray, index)) - 1.0)])
     return Measured(worst, len(rays.first))
 
 
@@ -83,10 +83,12 @@ def _across(direction: np.ndarray) -> np.ndarray:
 
 
 CHECKS = [
-    *(Check(f"{name}: traced paths are those of least optical length", "Fermat's principle, minimised by scipy", EXACT,
+    *(Check(f"{name}: traced paths are those of least optical length",
+            "Fermat's principle, minimised by scipy", EXACT,
             0.0, 1e-9, "mm", partial(fermat, name)) for name in LENS_SCENES),
     *(Check(f"{name}: light goes back the way it came", "reversibility of light", EXACT, 0.0, 1e-9, "mm",
             partial(reversed_light, name)) for name in LENS_SCENES),
-    *(Check(f"{name}: etendue is kept", "Liouville's theorem for rays", EXACT, 0.0, 1e-7, "", partial(etendue, name))
+    *(Check(f"{name}: etendue is kept", "Liouville's theorem for rays", EXACT, 0.0, 1e-7, "", partial(etendue,
+                                                                                                      name))
       for name in LENS_SCENES),
 ]

@@ -82,14 +82,14 @@ def sphere_aberration() -> Measured:
 CARTESIAN = "Cartesian ovals: conics that image a point without aberration (Descartes)"
 
 CHECKS = [
-    Check("an ellipsoid of Q = -1/n^2 focuses parallel light at n R / (n - 1)", CARTESIAN, EXACT, 0.0, 1e-12, "mm",
-          ellipsoid_into_glass),
-    Check("a hyperboloid of Q = -n^2 focuses parallel light that leaves glass at R / (n - 1)", CARTESIAN, EXACT, 0.0,
-          1e-12, "mm", hyperboloid_out_of_glass),
-    Check("a sphere images its aplanatic point R / n from the centre at n R", "aplanatic points of a sphere (Weierstrass)",
-          EXACT, 0.0, 1e-12, "mm", aplanatic_sphere),
-    Check("behind a sphere rays cross the axis where the sine law says", "law of sines", EXACT, 0.0, 1e-11, "mm",
-          sphere_off_closed_form),
-    Check("aberration of a sphere R 7.8, 1.376, at 4 mm height", "a separate trial program", COMPUTED, 2.1, 0.05, "mm",
-          sphere_aberration),
+    Check("an ellipsoid of Q = -1/n^2 focuses parallel light at n R / (n - 1)", CARTESIAN, EXACT, 0.0, 1e-12,
+          "mm", ellipsoid_into_glass),
+    Check("a hyperboloid of Q = -n^2 focuses parallel light that leaves glass at R / (n - 1)", CARTESIAN,
+          EXACT, 0.0, 1e-12, "mm", hyperboloid_out_of_glass),
+    Check("a sphere images its aplanatic point R / n from the centre at n R",
+          "aplanatic points of a sphere (Weierstrass)", EXACT, 0.0, 1e-12, "mm", aplanatic_sphere),
+    Check("behind a sphere rays cross the axis where the sine law says", "law of sines", EXACT, 0.0, 1e-11,
+          "mm", sphere_off_closed_form),
+    Check("aberration of a sphere R 7.8, 1.376, at 4 mm height", "a separate trial program", COMPUTED, 2.1,
+          0.05, "mm", sphere_aberration),
 ]

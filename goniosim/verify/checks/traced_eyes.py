@@ -85,17 +85,21 @@ def _eye_checks(eye: str, called: str, status: str, source: str, corneal_d: floa
 
 
 CHECKS = [
-    *_eye_checks("gullstrand-exact-anterior", "Gullstrand's exact eye", MEMORY, PRINTED, 43.053, (3.047, 1.133), 6e-4),
+    *_eye_checks("gullstrand-exact-anterior", "Gullstrand's exact eye", MEMORY, PRINTED, 43.053, (3.047,
+          1.133), 6e-4),
     *_eye_checks("le-grand-full", "Le Grand's full eye", MEMORY, PRINTED, 42.356, (3.038, 1.131), 6e-4),
     *_eye_checks("navarro-1985", "Navarro's eye", COMPUTED, SUMS, 42.8818, (3.0424, 1.13284), 7e-5),
-    *_eye_checks("liou-brennan-1997-anterior", "Liou and Brennan's eye", COMPUTED, SUMS, 42.2511, (3.0981, 1.13317), 7e-5),
-    *_eye_checks("atchison-2006-anterior", "Atchison's eye", COMPUTED, SUMS, 42.4767, (3.1350, 1.13557), 7e-5),
+    *_eye_checks("liou-brennan-1997-anterior", "Liou and Brennan's eye", COMPUTED, SUMS, 42.2511, (3.0981,
+          1.13317), 7e-5),
+    *_eye_checks("atchison-2006-anterior", "Atchison's eye", COMPUTED, SUMS, 42.4767, (3.1350, 1.13557),
+          7e-5),
     Check("traced, le-grand-full: equivalent power", PRINTED, MEMORY, 59.940, 6e-4, "D",
           partial(whole_power_d, "le-grand-full")),
     Check("traced, le-grand-full: focus behind the vertex", PRINTED, MEMORY, 24.197, 6e-4, "mm",
           partial(focus_mm, "le-grand-full")),
-    Check("traced, navarro-1985: equivalent power", "Navarro, Santamaria & Bescos, J Opt Soc Am A 2:1273 (1985)", MEMORY,
+    Check("traced, navarro-1985: equivalent power",
+          "Navarro, Santamaria & Bescos, J Opt Soc Am A 2:1273 (1985)", MEMORY,
           60.416, 6e-4, "D", partial(whole_power_d, "navarro-1985")),
-    Check("traced, navarro-1985: focus behind the vertex", "Navarro, Santamaria & Bescos (1985)", MEMORY, 24.004, 6e-4,
-          "mm", partial(focus_mm, "navarro-1985")),
+    Check("traced, navarro-1985: focus behind the vertex", "Navarro, Santamaria & Bescos (1985)", MEMORY,
+          24.004, 6e-4, "mm", partial(focus_mm, "navarro-1985")),
 ]

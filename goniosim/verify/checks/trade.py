@@ -38,7 +38,7 @@ def lowest_bare_exit_deg() -> Measured:
         traces = scene.trace(target.point_mm, over_hemisphere(target.normal, 20000))
         leaves = traces.directions[(traces.status == 0) & ~traces.stray]
         rays += len(traces.status)
-        least = min([least, *(from_axis_deg(direction) for direction in leaves)])
+        least = np.min([least, *(from_axis_deg(direction) for direction in leaves)])
     return Measured(least, rays)
 
 
@@ -84,7 +84,8 @@ def _shift(made) -> np.ndarray:
 
 @lru_cache(maxsize=None)
 def _pool_plan(tilt_deg: float):
-    return plan(_scene({"use": "saline-pool", "mark_at_clock": 9}, scope={"use": "stereo-200", "tilt_deg": tilt_deg},
+    return plan(_scene({"use": "saline-pool", "mark_at_clock": 9}, scope={"use": "stereo-200",
+                                                                          "tilt_deg": tilt_deg},
                        head={"turn_deg": 30, "turn_toward": "left"},
                        tool={"use": "straight-23g", "entry": {"clock": 9, "inside_limbus_mm": 1.0}}))
 
@@ -101,7 +102,8 @@ def pool_landing_mm(tilt_deg: float) -> Measured:
 
 def flat_face_anterior_mm(line_of_sight_deg: float) -> Measured:
     """How much more anterior the meshwork seems through the flat face leaned 48 deg, along a line of sight."""
-    scene = _scene(_on_eye("direct-face-48"), scope={"use": "stereo-200", "tilt_deg": line_of_sight_deg - 35.0},
+    scene = _scene(_on_eye("direct-face-48"), scope={"use": "stereo-200",
+                                                     "tilt_deg": line_of_sight_deg - 35.0},
                    head={"turn_deg": 35, "turn_toward": "left"})
     return Measured(plan(scene).to_dict()["sightings"][0]["seems_anterior_mm"], 3)
 
@@ -110,10 +112,10 @@ COMMON = "common practice"
 TRIAL = "geometry: between aqueous and a denser flat lens light bends too; seen in a separate trial program"
 
 CHECKS = [
-    Check("no accessible line of sight shows the meshwork through a bare cornea", COMMON, PRACTICE, ACCESSIBLE_DEG, 0.0,
-          "deg", lowest_bare_exit_deg, ABOVE),
-    Check("light gets out of the cornea below about 46.5 deg of incidence, and none above", DUANE, VERIFIED, (46.5, 46.5),
-          0.25, "deg", parting_incidence_deg),
+    Check("no accessible line of sight shows the meshwork through a bare cornea", COMMON, PRACTICE,
+          ACCESSIBLE_DEG, 0.0, "deg", lowest_bare_exit_deg, ABOVE),
+    Check("light gets out of the cornea below about 46.5 deg of incidence, and none above", DUANE, VERIFIED,
+          (46.5, 46.5), 0.25, "deg", parting_incidence_deg),
     Check("with air on both sides of everything nothing is displaced", COMMON, PRACTICE, 0.0, 1e-9, "mm",
           shift_with_air_everywhere_mm),
     Check("squarely through the bare cornea nothing is displaced sideways", COMMON, PRACTICE, 0.0, 1e-9, "mm",
@@ -122,12 +124,13 @@ CHECKS = [
           lambda: sideways_shift_squarely_mm(_on_eye("direct-dome-pmma"))),
     Check("squarely through a level pool nothing is displaced sideways", COMMON, PRACTICE, 0.0, 1e-9, "mm",
           lambda: sideways_shift_squarely_mm({"use": "saline-pool", "mark_at_clock": 9})),
-    Check("through a level pool, microscope leaned 15 and 30 deg, the meshwork seems too anterior", COMMON, PRACTICE,
+    Check("through a level pool, microscope leaned 15 and 30 deg, the meshwork seems too anterior", COMMON,
+          PRACTICE,
           (0.0, 0.0), 0.1, "mm", lambda: [pool_anterior_mm(tilt).got for tilt in (15.0, 30.0)], ABOVE),
-    Check("a tool sent from the entry at what is seen there lands too anterior", COMMON, PRACTICE, (0.0, 0.0), 0.1, "mm",
-          lambda: [pool_landing_mm(tilt).got for tilt in (15.0, 30.0)], ABOVE),
-    Check("squarely through a flat PMMA face leaned 48 deg the meshwork seems posterior", TRIAL, COMPUTED, 0.0, 0.1, "mm",
-          partial(flat_face_anterior_mm, 48.0), BELOW),
+    Check("a tool sent from the entry at what is seen there lands too anterior", COMMON, PRACTICE, (0.0, 0.0),
+          0.1, "mm", lambda: [pool_landing_mm(tilt).got for tilt in (15.0, 30.0)], ABOVE),
+    Check("squarely through a flat PMMA face leaned 48 deg the meshwork seems posterior", TRIAL, COMPUTED,
+          0.0, 0.1, "mm", partial(flat_face_anterior_mm, 48.0), BELOW),
     Check("and along a line of sight of 80 deg anterior", TRIAL, COMPUTED, 0.0, 0.1, "mm",
           partial(flat_face_anterior_mm, 80.0), ABOVE),
 ]
