@@ -105,4 +105,9 @@ def picture_axes(sight: np.ndarray, seat_in_eye: np.ndarray) -> tuple[np.ndarray
         axis = np.array([0.0, 0.0, 1.0])
         up = axis - np.dot(axis, sight) * sight
     up = up / np.linalg.norm(up)
-    return np.cross(-sight, up), up
+    return cross(up, sight), up
+
+
+def cross(a: np.ndarray, b: np.ndarray) -> np.ndarray:
+    """Vector product of two (3,) arrays; numpy's own takes many times as long for single vectors."""
+    return np.array([a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0]])

@@ -24,8 +24,7 @@ NO_SIGHT = "no ray sets out toward the scope"
 
 WALK_STEPS = 24
 EDGE_STEPS = 60
-STOPPED_SHARE = 3  # every third stopped ray is asked: they lie close together
-LEFT, ABSORBED = 0, 1  # as in kernels/arrays.py, which is loaded late
+LEFT = 0  # as in kernels/arrays.py, which is loaded late
 
 
 def why_unseen(scene: CompiledScene, wavelength_nm: float, fan: Fan, goals_mm: list[np.ndarray]) -> str:
@@ -123,32 +122,31 @@ def absorbs(scene: CompiledScene, name: str) -> bool:
 
 def _nearest_stopped(scene: CompiledScene, wavelength_nm: float, fan: Fan, goal_mm: np.ndarray) -> str:
     """Cause by the stopped ray that was heading nearest to the goal; proper rays are not asked."""
-    rows = np.flatnonzero((fan.status != LEFT) | (fan.stray > 0))[::STOPPED_SHARE]
+    rows = np.flatnonzero((fan.status != LEFT) | (fan.stray > 0))
+    if len(rows) == 0:
+        return NO_SIGHT
     first = np.ascontiguousarray(fan.first[rows])
     origins = np.ascontiguousarray(np.broadcast_to(fan.origin_mm, first.shape))
     out = raw_trace(scene.arrays(wavelength_nm), origins, first, np.full(len(first), fan.body, np.int64), True)
-    best, words = -2.0, NO_SIGHT
-    for ray in range(len(first)):
-        place, heading, cause = _stop_of(scene, out, first[ray], ray)
-        toward = goal_mm - place
-        near = float(heading @ toward) / float(np.linalg.norm(toward))
-        if cause is not None and near > best:
-            best, words = near, cause
-    return words
+    step, stray = _first_stop(scene, out)
+    ray = np.arange(len(first))
+    place = out["path_point"][ray, step]
+    before = np.where((step == 0)[:, None], first, out["path_dir"][ray, np.maximum(step - 1, 0)])
+    # At the critical angle light would graze along the face: the way it would have left.
+    heading = np.where(stray[:, None], before + out["path_dir"][ray, step], before)
+    toward = goal_mm - place
+    near = np.einsum("ij,ij->i", heading, toward) / np.linalg.norm(heading, axis=1) / np.linalg.norm(toward, axis=1)
+    best = int(np.argmax(near))
+    face = scene.faces[int(out["path_face"][best, step[best]]) // 2].name
+    return (TOTAL_REFLECTION if stray[best] else BLOCKED).format(face=face)
 
 
-def _stop_of(scene: CompiledScene, out: dict, first: np.ndarray, ray: int):
-    """Where a ray was first stopped: the place, the direction it would have gone on in, and the cause."""
-    before = first
-    for step in range(int(out["met"][ray])):
-        number = int(out["path_face"][ray, step])
-        face = scene.faces[number // 2]
-        onward = out["path_dir"][ray, step]
-        if number % 2 and face.finish != "mirror" and face.works_by is None:
-            # At the critical angle light would graze along the face: the way it would have left.
-            grazing = before + onward
-            return out["path_point"][ray, step], grazing / np.linalg.norm(grazing), TOTAL_REFLECTION.format(face=face.name)
-        before = onward
-    if out["status"][ray] == ABSORBED:
-        return out["points"][ray], before, BLOCKED.format(face=scene.faces[int(out["ended"][ray])].name)
-    return out["points"][ray], before, None
+def _first_stop(scene: CompiledScene, out: dict) -> tuple[np.ndarray, np.ndarray]:
+    """Step of each path at which it was first stopped, (n,), and whether by a total reflection, (n,)."""
+    not_meant = np.array([face.finish != "mirror" and face.works_by is None for face in scene.faces])
+    longest = int(out["met"].max())
+    number = out["path_face"][:, :longest]
+    met = np.arange(longest) < out["met"][:, None]
+    reflected = met & (number % 2 == 1) & not_meant[np.where(met, number // 2, 0)]
+    stray = reflected.any(axis=1)
+    return np.where(stray, reflected.argmax(axis=1), out["met"] - 1), stray
