@@ -109,7 +109,7 @@ def flat_face_anterior_mm(line_of_sight_deg: float) -> Measured:
 
 
 COMMON = "common practice"
-TRIAL = "geometry: between aqueous and a denser flat lens light bends too; seen in a separate trial program"
+TRIAL = "geometry: between aqueous and a denser flat lens light bends too"
 
 CHECKS = [
     Check("no accessible line of sight shows the meshwork through a bare cornea", COMMON, PRACTICE,
