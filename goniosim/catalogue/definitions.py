@@ -107,11 +107,11 @@ class Definitions:
 
     def _media_named(self, blocks: Mapping[str, Any]) -> dict[str, Path]:
         """Every medium named, with the first path that names it."""
-        from ..eye.measurements import media_named
+        from ..eye.measurements import is_cup, media_named
 
         named: dict[str, Path] = {}
         for name in media_named(self.values["eye"]):
-            named.setdefault(name, ("eye", "definition", "media"))
+            named.setdefault(name, ("eye", "definition", *(("cup", "water") if is_cup(self.values["eye"]) else ("media",))))
         for number, body in enumerate(self.values.get("lens", {}).get("bodies", [])):
             named.setdefault(body["medium"], ("lens", "definition", "bodies", number, "medium"))
         if isinstance(blocks["lens"], Mapping) and blocks["lens"]["fluid"]:

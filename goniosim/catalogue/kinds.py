@@ -50,9 +50,9 @@ class Kind:
 
 
 def _eye_keys() -> tuple[Key, ...]:
-    from ..eye.measurements import EYE_KEYS
+    from ..eye.measurements import CUP, EYE_KEYS
 
-    return (*EYE_KEYS, MEASURED)
+    return (*EYE_KEYS, CUP, MEASURED)
 
 
 def _medium_keys() -> tuple[Key, ...]:

@@ -16,6 +16,7 @@ from typing import Any, Mapping, Sequence
 
 from ..errors import BadInput, Fault
 from .crosschecks import is_pool, pool_findings
+from .cup_check import cup_findings
 from .definitions import Definitions
 from .document import Document
 from .paths import Path, dotted, leaves
@@ -137,6 +138,7 @@ def _resolved(document: Document, scene: dict, catalogue: Catalogue) -> Resolved
     blocks, assumed = scene_blocks(scene)
     found = Definitions(document, scene, catalogue)
     found.look_up(blocks)
+    document.refuse(cup_findings(blocks, found.values["eye"]), "More: goniosim plugins explain scene")
     _rest(document, blocks["lens"], found.values.get("lens"))
     found.look_up_media(blocks)
     for kind, definition in found.values.items():

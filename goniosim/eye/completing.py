@@ -7,6 +7,7 @@ from typing import Any, Mapping
 
 from ..declare import Key
 from ..errors import BadInput
+from .cup_keys import complete_cup, is_cup
 from .keys import EYE_KEYS, QUADRANTS
 from .plausible import eye_faults
 
@@ -49,6 +50,8 @@ def complete(mapping: Mapping[str, Any], side: str) -> tuple[dict, set[str], lis
     faults = eye_faults(mapping)
     if faults:
         raise BadInput("eye", faults, "More: goniosim plugins explain eye")
+    if is_cup(mapping):
+        return complete_cup(mapping)
     filler = _Filler(mapping)
     filler.corneal_surfaces()
     filler.lens_and_chamber()
@@ -84,6 +87,8 @@ def with_measured(definition: Mapping[str, Any], measured: Mapping[str, Any] | N
 
 def media_named(complete_mapping: Mapping[str, Any]) -> list[str]:
     """Names of all media that a complete eye needs, without repeats."""
+    if is_cup(complete_mapping):
+        return [complete_mapping["cup"]["water"]]
     media, fill = complete_mapping["media"], complete_mapping["chamber"]["fill"]
     names = [media["cornea"], chamber_medium(complete_mapping), media["lens"], media["vitreous"]]
     if fill == "air-bubble":

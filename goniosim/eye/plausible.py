@@ -6,6 +6,7 @@ from typing import Any, Mapping
 
 from ..errors import Fault
 from ..units import radius_mm_from_keratometry_d
+from .cup_keys import cup_faults, is_cup
 from .keys import QUADRANTS
 
 RANGES: dict[str, tuple[float, float, str]] = {
@@ -43,6 +44,8 @@ DIOPTRES = (28.0, 70.0)
 
 def eye_faults(mapping: Mapping[str, Any]) -> list[Fault]:
     """Every value of an eye mapping (complete or not) that no eye can have; empty where all is well."""
+    if is_cup(mapping):
+        return cup_faults(mapping)
     faults = []
     for path, (low, high, unit) in RANGES.items():
         value = at(mapping, path)

@@ -193,7 +193,6 @@ def centred_sight(s, body, origin, start, code, w, right, distance_mm, half_base
     moves less than 1e-10 mm. dirs, points, outs (3, 3): first direction, last point, last direction for
     left, right, middle. Fills centre and apparent (3,). Returns (status, gap): FOUND, and the stereo gap.
     """
-    copy(origin, centre, 1.0)
     goal, gap = np.empty(3), math.inf
     for turn in range(1 + 2 * MAX_CENTRINGS):
         # The axis first, then left and right in turn.
@@ -210,6 +209,13 @@ def centred_sight(s, body, origin, start, code, w, right, distance_mm, half_base
         if aim(s, body, origin, dirs[which], code, turn > 0, goal, 1e-10 if turn else 1e-13, dirs[which], points[which],
                outs[which]) != FOUND:
             return NOT_CONVERGED, math.inf
+        if which == 2:
+            # Begin on the axis, beside the target: pupils centred on the target itself may lie in a shadow.
+            along = 0.0
+            for k in range(3):
+                along += (origin[k] - points[2, k]) * w[k]
+            for k in range(3):
+                centre[k] = points[2, k] + along * w[k]
         if which == 1:
             gap = between(points[0], outs[0], points[1], outs[1], apparent)
             along, step = 0.0, 0.0

@@ -26,7 +26,13 @@ MAX_FACES = 64
 # Columns of the face table.
 KIND, FINISH, REFLECTANCE, INTENDED, TURNED, PIECE_FROM, PIECE_TO = range(7)
 ORG, ROT, PAR, EXT = 7, 10, 19, 35  # three, nine, sixteen and four columns from here
-FACE_COLUMNS = 39
+QA, QB, QE, QG, CAP_0, CAP_1, SURE, SLAB_LOW, SLAB_HIGH, WITHIN_2, EQUATOR_2 = range(39, 50)
+"""The face as a quadric a (x^2 + y^2) + b z^2 + 2 e z + g = 0 that counts where CAP_0 + CAP_1 z > 0, for replay.
+
+SURE: 0 the quadric is the whole face; 1 only within WITHIN_2 (radius squared) of its axis, the rest lies between
+the two SLAB heights; 2 it tells nothing, the whole face lies between the SLAB heights. EQUATOR_2: radius
+squared beyond which all is behind.
+"""
 
 # Columns of the side table: one row for each face of each body.
 FACE, SIGN, BEYOND, NEAR_FROM, NEAR_TO, BODY = range(6)
@@ -39,7 +45,7 @@ INDEX, ABSORPTION = range(2)
 class SceneArrays(NamedTuple):
     """A scene at one wavelength, in few arrays, because every array that a kernel hands on costs time.
 
-    faces (F, 39) float64: kind, finish, reflectance, 1 where total reflection is meant, 1 where turned, rows of
+    faces (F, 50) float64: kind, finish, reflectance, 1 where total reflection is meant, 1 where turned, rows of
         its cubic pieces from and to, origin (3), rotation shape to eye (9), parameters (16), extent r_min,
         r_max, z_min, z_max (4).
     pieces (P, 9) float64: r0, r1, a, b, c, d, least and greatest z, bound on bending of each cubic piece.

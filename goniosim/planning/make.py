@@ -8,12 +8,13 @@ import numpy as np
 
 from ..eye.structures import ANGLE_STRUCTURES
 from ..sight.cutoffs import cutoffs
-from ..sight.landing import MISSED, land
+from ..sight.landing import MISSED, Landing, land
 from ..sight.paths import LightPath, Scoped
 from ..sight.scene import Scene
 from ..sight.sighting import Sighting, Viewer
 from ..sight.target import Target, structure_target, target_of
 from .aim import aim_correction, gap_table
+from .bench import bench_notes
 from .neutral import neutral_line
 from .record import CutoffRow, Plan
 from .ring import clock_ring
@@ -52,8 +53,9 @@ def make_plan(scene: Scene, progress: Callable[[str, int, int], None] | None = N
         gaps = tuple(gap_table(viewer, scope, target, apparent, entry, sighting.view.middle.by))
         toward = (apparent - entry) / np.linalg.norm(apparent - entry)
         from_entry = land(scene.eye, entry, toward, target.arc_mm, target.clock)
-    return Plan(scene, scope, target, sightings, _along_sight(scene, target, sighting), from_entry, entry, correction,
-                gaps, tuple(rows), neutral, ring, _margins(scene, sighting), _notes(scene, sighting))
+    landing = _along_sight(scene, target, sighting)
+    return Plan(scene, scope, target, sightings, landing, from_entry, entry, correction, gaps, tuple(rows), neutral,
+                ring, _margins(scene, sighting), _notes(scene, sighting, landing))
 
 
 def _neighbours(scene: Scene, target: Target) -> list[Target]:
@@ -119,7 +121,7 @@ def _margin(scene: Scene, path: LightPath, step: int, face) -> dict[str, float]:
 STEREO_FOCUS_NOTE_MM = 0.1
 
 
-def _notes(scene: Scene, sighting: Sighting) -> tuple[str, ...]:
+def _notes(scene: Scene, sighting: Sighting, landing: Landing) -> tuple[str, ...]:
     """What the reader must know beside the figures."""
     notes = list(scene.notes)
     foci, view = sighting.foci, sighting.view
@@ -127,4 +129,5 @@ def _notes(scene: Scene, sighting: Sighting) -> tuple[str, ...]:
         if foci.separation_mm > STEREO_FOCUS_NOTE_MM:
             notes.append(f"depth by stereo and depth by focus differ: the image's two foci lie "
                          f"{foci.separation_mm:.1f} mm apart along the line of sight")
+    notes += bench_notes(scene.mapping["eye"]["definition"], scene.mapping["scope"]["tilt_deg"], landing)
     return tuple(notes)

@@ -58,11 +58,15 @@ class Body:
     sides : (face name, 'behind' | 'ahead') for every bounding face.
     entry_checks : the sides that a hit from outside must respect; None means all of `sides`.
                    The eye's chamber is closed by faces with ends, not by half-spaces, and needs none.
-    open_to_air : whether a ray in air can meet it.
+    open_to_air : whether a ray in air can meet it; or names of the only faces at which it can.
     """
 
     name: str
     medium: str
     sides: tuple[tuple[str, str], ...]
     entry_checks: tuple[tuple[str, str], ...] | None = None
-    open_to_air: bool = True
+    open_to_air: bool | tuple[str, ...] = True
+
+    def meets_air_at(self, face_name: str) -> bool:
+        """Whether a ray in air can meet the body at a face."""
+        return face_name in self.open_to_air if isinstance(self.open_to_air, tuple) else self.open_to_air

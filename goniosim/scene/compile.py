@@ -8,7 +8,7 @@ from typing import Mapping
 import numpy as np
 
 from ..faces import Lowered
-from ..faces.base import TORIC
+from ..faces.base import CONE, CONIC, CYLINDER, PLANE, ROUND_CORNEA, TORIC
 from .bodies import FINISHES, OPAQUE, Body, Face
 
 AIR_BODY, OPAQUE_BODY = -1, -2
@@ -58,7 +58,7 @@ class CompiledScene:
         near_from, side_from, check_from = (_offsets([len(row) for row in rows])
                                             for rows in (near, [body.sides for body in self.bodies], checks))
         beyond = [OPAQUE_BODY if self.faces[f].beyond == "opaque" else AIR_BODY for _, f, _ in sides]
-        air = sorted((i for i, (b, _, _) in enumerate(sides) if self.bodies[b].open_to_air),
+        air = sorted((i for i, (b, f, _) in enumerate(sides) if self.bodies[b].meets_air_at(self.faces[f].name)),
                      key=lambda i: sides[i][1:])
         opaque = [int(body.medium == OPAQUE) for body in self.bodies]
         rows = [(f, s, outside, near_from[i], near_from[i + 1], b)
@@ -101,4 +101,24 @@ def _face_row(face: Face, low: Lowered, piece_from: int, piece_to: int) -> np.nd
         [low.kind, FINISHES.index(face.finish), face.reflectance or 0.0, face.works_by == "total_reflection", turned,
          piece_from, piece_to],
         face.origin_mm, np.ravel(face.rotation), low.parameters,
-        [low.r_min_mm, low.r_max_mm, low.z_min_mm, low.z_max_mm]])
+        [low.r_min_mm, low.r_max_mm, low.z_min_mm, low.z_max_mm], _quadric(low)])
+
+
+def _quadric(low: Lowered) -> list[float]:
+    """The face as a quadric about its own axis, for replay; the columns are named in `kernels/arrays.py`."""
+    first, second, join = low.parameters[:3]
+    far = (low.z_min_mm, low.z_max_mm)
+    if low.kind == PLANE:
+        return [0.0, 0.0, 0.5, 0.0, 1.0, 0.0, 0, *far, np.inf, np.inf]
+    if low.kind == CYLINDER:
+        return [1.0, 0.0, 0.0, -first * first, 1.0, 0.0, 0, *far, np.inf, np.inf]
+    if low.kind == CONE:
+        return [1.0, -second * second, -second * first, -first * first, first, second, 0, *far, np.inf, np.inf]
+    if low.kind in (CONIC, ROUND_CORNEA):
+        equator = 1.0 / (first * first * second) if second > 0.0 else np.inf
+        conic = [first, first * second, 1.0, 0.0, 1.0, first * second]
+        if low.kind == CONIC:
+            return [*conic, 0, *far, np.inf, equator]
+        return [*conic, 1, low.pieces[:, 6].min(), low.pieces[:, 7].max(), join * join, equator]
+    heights = (low.pieces[:, 6].min(), low.pieces[:, 7].max()) if len(low.pieces) else (low.z_min_mm, low.z_max_mm)
+    return [0.0] * 6 + [2, *heights, 0.0, np.inf]

@@ -18,6 +18,8 @@ from ..errors import Misuse
 from .compile import CompiledScene
 
 FIND_START = -9  # body number that asks the kernel to find where a ray starts
+BLOCK = 256  # rays that are traced together, as in kernels/replay.py
+BLOCKS_FROM = 10_000  # rays; a fan goes too many ways to gain by blocks, and a plan need not compile them
 SPLIT_FROM = 4000  # rays; below this one thread is quicker
 
 
@@ -77,7 +79,7 @@ def kernels():
 def raw_trace(arrays, origins: np.ndarray, directions: np.ndarray, bodies: np.ndarray, paths: bool = False) -> dict:
     """Arrays in, arrays out: run the bundle kernel over threads; see `trace_bundle`."""
     n = len(origins)
-    run = kernels().bundle.trace_bundle
+    package = kernels()
     kept = n if paths else 1
     out = {
         "ended": np.empty(n, np.int64), "status": np.empty(n, np.int64), "points": np.empty((n, 3)),
@@ -86,17 +88,21 @@ def raw_trace(arrays, origins: np.ndarray, directions: np.ndarray, bodies: np.nd
         "stray": np.empty(n, np.int64),
     }
     path = (np.empty((kept, 64), np.int64), np.empty((kept, 64, 3)), np.empty((kept, 64, 3)))
+    bodies = bodies.copy()
 
     def part(rows: slice):
-        chosen = path if not paths else tuple(array[rows] for array in path)
-        run(arrays, bodies[rows], origins[rows], directions[rows], *(array[rows] for array in out.values()),
-            paths, *chosen)
+        given = (arrays, bodies[rows], origins[rows], directions[rows], *(array[rows] for array in out.values()))
+        if n < BLOCKS_FROM or paths:
+            package.bundle.trace_bundle(*given, paths, *(path if not paths else (array[rows] for array in path)))
+        else:
+            package.replay.trace_blocks(*given)
 
     threads = thread_count()
     if n < SPLIT_FROM or threads == 1:
         part(slice(0, n))
     else:
-        edges = np.linspace(0, n, threads + 1).astype(int)
+        # Cut between blocks, so that blocks, and with them the last digits, do not depend on the threads.
+        edges = [n * i // threads // BLOCK * BLOCK for i in range(threads)] + [n]
         list(_pool().map(part, [slice(a, b) for a, b in zip(edges[:-1], edges[1:])]))
     if paths:
         out["path_face"], out["path_point"], out["path_dir"] = path
