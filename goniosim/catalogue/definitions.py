@@ -110,8 +110,9 @@ class Definitions:
         from ..eye.measurements import is_cup, media_named
 
         named: dict[str, Path] = {}
+        inside = ("cup", "water") if is_cup(self.values["eye"]) else ("media",)
         for name in media_named(self.values["eye"]):
-            named.setdefault(name, ("eye", "definition", *(("cup", "water") if is_cup(self.values["eye"]) else ("media",))))
+            named.setdefault(name, ("eye", "definition", *inside))
         for number, body in enumerate(self.values.get("lens", {}).get("bodies", [])):
             named.setdefault(body["medium"], ("lens", "definition", "bodies", number, "medium"))
         if isinstance(blocks["lens"], Mapping) and blocks["lens"]["fluid"]:

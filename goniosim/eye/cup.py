@@ -1,7 +1,7 @@
 """A cup of water in place of an eye, with the same interface: faces, bodies, and where its mark lies.
 
-Its frame is the eye's with the origin at the centre of the water's surface and +z up. The cup is opaque, wall and
-floor are straight, and the surface is flat: how the water wets the wall is left out.
+Its frame is the eye's with the origin at the centre of the water's surface and +z up. The cup is opaque, wall
+and floor are straight, and the surface is flat: how the water wets the wall is left out.
 """
 
 from __future__ import annotations
@@ -24,8 +24,9 @@ THICKNESS_MM = 3.0  # of wall and floor; no figure of a plan depends on it
 
 @dataclass(frozen=True)
 class CupAnatomy:
-    """Where the mark lies, in mm. Arcs run up the wall from the middle of the mark, and from the wall's foot on
-    (negative) along the floor to its centre. The mark is at the same height all round.
+    """Where the mark lies, in mm, at the same height all round.
+
+    Arcs run up the wall from the middle of the mark, and on from the wall's foot (negative) along the floor.
     """
 
     inside_radius_mm: float
@@ -89,14 +90,15 @@ def build_cup(mapping: Mapping[str, Any]) -> BuiltEye:
 
 def _faces(cup: Mapping[str, Any]) -> list[Face]:
     radius = cup["inside_radius_mm"]
+    outer = radius + THICKNESS_MM
     floor_z = -cup["water_above_mark_mm"] - cup["water_below_mark_mm"]
     stops = {"finish": "opaque", "beyond": "opaque"}
     return [
         Face(SURFACE, Plane(0.0, radius)),
         Face(WALL, Cylinder(radius), **stops),
         Face(FLOOR, Plane(), origin_mm=_at_height(floor_z), **stops),
-        Face(RIM, AnnularPlane(radius, radius + THICKNESS_MM), origin_mm=_at_height(cup["wall_above_water_mm"])),
-        Face(OUTSIDE, Cylinder(radius + THICKNESS_MM)),
+        Face(RIM, AnnularPlane(radius, outer), origin_mm=_at_height(cup["wall_above_water_mm"])),
+        Face(OUTSIDE, Cylinder(outer)),
         Face(FOOT, Plane(), origin_mm=_at_height(floor_z - THICKNESS_MM)),
     ]
 
@@ -104,12 +106,14 @@ def _faces(cup: Mapping[str, Any]) -> list[Face]:
 def _bodies(water: str) -> list[Body]:
     """The water, the ring of wall above it, and the cup as it stops light from outside.
 
-    Light in air meets the water at its surface alone, so that light which starts on the wall starts in the water.
+    Light in air meets the water at its surface alone, so that light from the wall starts in the water.
     """
+    inside = ((SURFACE, "behind"), (WALL, "behind"), (FLOOR, "ahead"))
+    within, ring = ((OUTSIDE, "behind"), (RIM, "behind")), ((WALL, "ahead"), (SURFACE, "ahead"))
     return [
-        Body("water", water, ((SURFACE, "behind"), (WALL, "behind"), (FLOOR, "ahead")), open_to_air=(SURFACE,)),
-        Body("wall-above-water", OPAQUE, ((WALL, "ahead"), (OUTSIDE, "behind"), (RIM, "behind"), (SURFACE, "ahead"))),
-        Body("cup", OPAQUE, ((OUTSIDE, "behind"), (RIM, "behind"), (FOOT, "ahead"))),
+        Body("water", water, inside, open_to_air=(SURFACE,)),
+        Body("wall-above-water", OPAQUE, (*ring, *within)),
+        Body("cup", OPAQUE, (*within, (FOOT, "ahead"))),
     ]
 
 

@@ -1,4 +1,4 @@
-"""Keys of a cup, which an eye file may describe in place of an eye: the bench on which to try the optics at home."""
+"""Keys of a cup, which an eye file may describe in place of an eye: the bench on which to try it at home."""
 
 from __future__ import annotations
 
@@ -15,15 +15,15 @@ CUP_KEYS: tuple[Key, ...] = (
         unit="mm", above=0.0, maximum=500.0, source=PRACTICE),
     Key("water_below_mark_mm", "number", "height of the mark's middle above the cup's floor", default=20.0,
         unit="mm", above=0.0, maximum=500.0, source=PRACTICE),
-    Key("wall_above_water_mm", "number", "height of the rim above the water's surface", default=15.0, unit="mm",
-        minimum=0.0, maximum=500.0, source=PRACTICE),
+    Key("wall_above_water_mm", "number", "height of the rim above the water's surface", default=15.0,
+        unit="mm", minimum=0.0, maximum=500.0, source=PRACTICE),
     Key("water", "name", "medium in the cup", default="water"),
-    Key("mark_height_mm", "number", "height of the mark itself", default=2.0, unit="mm", above=0.0, maximum=50.0,
-        source=PRACTICE),
+    Key("mark_height_mm", "number", "height of the mark itself", default=2.0, unit="mm", above=0.0,
+        maximum=50.0, source=PRACTICE),
 )
 
-CUP = Key("cup", "map", "a straight-sided cup with a mark on its inner wall, in place of an eye; all other blocks "
-          "are then left out", default=None, keys=CUP_KEYS)
+CUP = Key("cup", "map", "a straight-sided cup with a mark on its inner wall, in place of an eye; all other "
+          "blocks are then left out", default=None, keys=CUP_KEYS)
 
 
 def is_cup(mapping: Mapping[str, Any]) -> bool:
@@ -36,15 +36,16 @@ def cup_faults(mapping: Mapping[str, Any]) -> list[Fault]:
     faults = [Fault(key.name, "must be left out: cup is given, and a cup holds no eye")
               for key in EYE_KEYS if mapping.get(key.name) is not None]
     cup = _with_defaults(mapping[CUP.name])
-    for key, reaches in (("water_above_mark_mm", "above the water"), ("water_below_mark_mm", "below the floor")):
-        if cup[key] < 0.5 * cup["mark_height_mm"]:
-            faults.append(Fault(f"cup.{key}", f"must be at least half of mark_height_mm, {cup['mark_height_mm']:g}, or "
-                                              f"the mark reaches {reaches}; got {cup[key]:g}"))
+    height = cup["mark_height_mm"]
+    for key, end in (("water_above_mark_mm", "above the water"), ("water_below_mark_mm", "below the floor")):
+        if cup[key] < 0.5 * height:
+            faults.append(Fault(f"cup.{key}", f"must be at least half of mark_height_mm, {height:g}, or the "
+                                              f"mark reaches {end}; got {cup[key]:g}"))
     return faults
 
 
 def complete_cup(mapping: Mapping[str, Any]) -> tuple[dict, set[str], list[str]]:
-    """A cup with every key, the dotted paths of what was assumed, and notes (none); as `complete` does for an eye."""
+    """A cup with every key, the dotted paths of what was assumed, and no notes; see `complete`."""
     cup = mapping[CUP.name]
     assumed = {f"cup.{key.name}" for key in CUP_KEYS if cup.get(key.name) is None}
     names = {key.name for key in EYE_KEYS}

@@ -90,8 +90,8 @@ def compiled_before() -> bool:
     return CACHE_FOLDER is not None and any(CACHE_FOLDER.rglob("bundle.trace_bundle-*.nbi"))
 
 
-from . import aim, bundle, replay, shapes  # noqa: E402  (the cache folder must be set before they are decorated)
+from . import aim, bundle, replay, shapes, starts  # noqa: E402  (the cache folder must be set before they are decorated)
 
 numba.config.CACHE_DIR = _before
 
-__all__ = ["aim", "bundle", "compiled_before", "kernel", "replay", "shapes"]
+__all__ = ["aim", "bundle", "compiled_before", "kernel", "replay", "shapes", "starts"]

@@ -116,21 +116,6 @@ def neighbour(q, pieces, sides, bodies, checks, near, row, p0, p1, p2):
     return sides[row, BEYOND]
 
 
-@kernel
-def locate(s, p0, p1, p2, d0, d1, d2):
-    """The body in which a ray starts: the one that its first crossing leaves, else the air."""
-    q, pieces, sides, bodies, checks, _, air, _ = s
-    best, body = math.inf, np.int64(AIR_BODY)
-    for b in range(len(bodies)):
-        for i in range(bodies[b, SIDE_FROM], bodies[b, SIDE_TO]):
-            f = sides[i, FACE]
-            t = face_crossing(q, f, pieces, p0, p1, p2, d0, d1, d2, -float(sides[i, SIGN]), best)
-            if t < best and holds(q, pieces, bodies, checks, b, f, p0 + t * d0, p1 + t * d1, p2 + t * d2):
-                best, body = t, np.int64(b)
-    row, entry = way_in(q, pieces, sides, bodies, checks, air, p0, p1, p2, d0, d1, d2)
-    return np.int64(AIR_BODY) if row >= 0 and entry < best - TOUCH else body
-
-
 @small_kernel
 def unpolarised_transmittance(n1, n2, cos1, cos2):
     """Fresnel's power transmittance of unpolarised light at a clear face."""
@@ -230,17 +215,14 @@ def trace_ray(s, body, p0, p1, p2, d0, d1, d2, keep, path_face, path_point, path
 @kernel
 def trace_bundle(s, bodies, origins, directions, ended, status, points, outward, power, headroom, room_face,
                  code, met, stray, keep, path_face, path_point, path_dir):
-    """Trace rays one by one into the arrays given; bodies < -2 asks for the start to be found.
+    """Trace rays one by one into the arrays given; bodies (n,): where each starts.
 
     keep: 1 to fill path_face (n, 64), path_point and path_dir (n, 64, 3); else these may be of length one.
     """
     for i in range(len(origins)):
         p0, p1, p2 = origins[i, 0], origins[i, 1], origins[i, 2]
         d0, d1, d2 = directions[i, 0], directions[i, 1], directions[i, 2]
-        body = bodies[i]
-        if body < OPAQUE_BODY:
-            body = locate(s, p0, p1, p2, d0, d1, d2)
         j = i if keep else 0
         (status[i], ended[i], points[i, 0], points[i, 1], points[i, 2], outward[i, 0], outward[i, 1], outward[i, 2],
          power[i], headroom[i], room_face[i], code[i], met[i], stray[i]) = trace_ray(
-            s, body, p0, p1, p2, d0, d1, d2, keep, path_face[j], path_point[j], path_dir[j])
+            s, bodies[i], p0, p1, p2, d0, d1, d2, keep, path_face[j], path_point[j], path_dir[j])

@@ -16,9 +16,9 @@ import numpy as np
 
 from . import kernel
 from .arrays import (ABSORPTION, AIR_BODY, CAP_0, CAP_1, CHECK_FROM, CHECK_TO, COATED, EQUATOR_2, EXT, FACE, FINISH,
-                     INDEX, LEFT, MIRROR, NEAR_FROM, NEAR_TO, OPAQUE_BODY, ORG, QA, QB, QE, QG, REFLECTANCE, ROT, SIDE_FROM, SIDE_TO, SIGN,
+                     INDEX, LEFT, MIRROR, NEAR_FROM, NEAR_TO, ORG, QA, QB, QE, QG, REFLECTANCE, ROT, SIDE_FROM, SIDE_TO, SIGN,
                      SLAB_HIGH, SLAB_LOW, SURE, WITHIN_2)
-from .bundle import angle_of, locate, neighbour, trace_ray, way_in, way_out
+from .bundle import angle_of, neighbour, trace_ray, way_in, way_out
 from .shapes import T_MIN
 
 BLOCK = 256
@@ -303,16 +303,12 @@ def trace_blocks(s, bodies, origins, directions, ended, status, points, outward,
                  stray):
     """Trace rays in blocks: one of each generally, the rest by replaying its path where that holds.
 
-    The same arrays and meaning as `trace_bundle` without paths; bodies < -2 are found first. Which rays
+    The same arrays and meaning as `trace_bundle` without paths. Which rays
     share a block depends on their order alone.
     """
     path_face, path_point, path_dir = np.empty(64, np.int64), np.empty((64, 3)), np.empty((64, 3))
     rows, after = np.empty(64, np.int64), np.empty(64, np.int64)
     m = np.empty(ROWS * BLOCK)
-    for i in range(len(origins)):
-        if bodies[i] < OPAQUE_BODY:
-            bodies[i] = locate(s, origins[i, 0], origins[i, 1], origins[i, 2], directions[i, 0], directions[i, 1],
-                               directions[i, 2])
     for first in range(0, len(origins), BLOCK):
         n = min(BLOCK, len(origins) - first)
         lead = first + n // 2

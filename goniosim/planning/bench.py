@@ -8,11 +8,13 @@ from ..eye.measurements import is_cup
 from ..sight.landing import Landing
 
 HOW_TO = (
-    "to try it: draw the mark inside a straight-sided cup and pour water until it stands {depth:g} mm deep over the mark",
-    "lean the phone {tilt:g} deg from upright (a level app shows it), looking over the near rim at the mark on the far "
-    "wall; fix a straight straw to the rim so that the mark is seen through its bore, its lower end still dry",
-    "push the straw straight on, without aiming again once it is wet, until it touches the wall; measure along the wall "
-    "from the mark",
+    "to try it: draw the mark inside a straight-sided cup and pour water until it stands {depth:g} mm deep "
+    "over the mark",
+    "lean the phone {tilt:g} deg from upright (a level app shows it), looking over the near rim at the mark "
+    "on the far wall; fix a straight straw to the rim so that the mark is seen through its bore, its lower "
+    "end still dry",
+    "push the straw straight on, without aiming again once it is wet, until it touches the wall; measure "
+    "along the wall from the mark",
 )
 
 
@@ -29,4 +31,5 @@ def _figure(landing: Landing) -> list[str]:
     if landing.anterior_mm is None:
         return []
     way = "above" if landing.anterior_mm >= 0.0 else "below"
-    return [f"a straight straw sent down the line of sight lands {abs(landing.anterior_mm):.1f} mm {way} the mark"]
+    off_mm = abs(landing.anterior_mm)
+    return [f"a straight straw sent down the line of sight lands {off_mm:.1f} mm {way} the mark"]

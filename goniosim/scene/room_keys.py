@@ -131,8 +131,8 @@ SCENE_KEYS: tuple[Key, ...] = (
 SCOPE_KEYS: tuple[Key, ...] = (
     Key("working_distance_mm", "number", "distance from the centre of the view to the pupils", unit="mm",
         minimum=20.0, maximum=2000.0),
-    Key("stereo_base_mm", "number", "distance between the two pupils; for one camera, between its two shots", unit="mm",
-        above=0.0, maximum=200.0),
+    Key("stereo_base_mm", "number", "distance between the two pupils; for one camera, between its two shots",
+        unit="mm", above=0.0, maximum=200.0),
     Key("pupil_diameter_mm", "number", "diameter of each pupil", unit="mm", above=0.0, maximum=200.0),
     Key("field_diameter_mm", "number", "diameter of the field of view, square to the line of sight", unit="mm",
         above=0.0, maximum=500.0),

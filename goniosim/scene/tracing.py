@@ -18,8 +18,9 @@ from ..errors import Misuse
 from .compile import CompiledScene
 
 FIND_START = -9  # body number that asks the kernel to find where a ray starts
+OPAQUE_BODY = -2  # as in kernels/arrays.py
 BLOCK = 256  # rays that are traced together, as in kernels/replay.py
-BLOCKS_FROM = 10_000  # rays; a fan goes too many ways to gain by blocks, and a plan need not compile them
+BLOCKS_FROM = 50_000  # rays; a fan goes too many ways to gain by blocks, and a plan need not compile them
 SPLIT_FROM = 4000  # rays; below this one thread is quicker
 
 
@@ -88,9 +89,12 @@ def raw_trace(arrays, origins: np.ndarray, directions: np.ndarray, bodies: np.nd
         "stray": np.empty(n, np.int64),
     }
     path = (np.empty((kept, 64), np.int64), np.empty((kept, 64, 3)), np.empty((kept, 64, 3)))
+    find = bool(n) and bodies.min() < OPAQUE_BODY
     bodies = bodies.copy()
 
     def part(rows: slice):
+        if find:
+            package.starts.locate_bundle(arrays, bodies[rows], origins[rows], directions[rows])
         given = (arrays, bodies[rows], origins[rows], directions[rows], *(array[rows] for array in out.values()))
         if n < BLOCKS_FROM or paths:
             package.bundle.trace_bundle(*given, paths, *(path if not paths else (array[rows] for array in path)))

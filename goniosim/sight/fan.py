@@ -10,6 +10,7 @@ from ..scene.compile import CompiledScene
 from ..scene.tracing import raw_trace
 
 COARSE = 64  # rays along each side of the square that maps to the hemisphere
+TOUCH_MM = 1e-9
 FINE = 4  # a cell whose corners disagree is filled with FINE x FINE more
 
 
@@ -70,7 +71,7 @@ def shoot(scene: CompiledScene, wavelength_nm: float, origin_mm: np.ndarray, nor
     line = (np.arange(coarse) + 0.5) / coarse
     u, v = np.meshgrid(line, line, indexing="ij")
     first = on_hemisphere(u, v).reshape(-1, 3) @ frame
-    body = start_body(arrays, origin_mm, normal)
+    body = start_body(scene, wavelength_nm, origin_mm, normal)
     out = _trace(arrays, origin_mm, first, body)
     if refined:
         mixed = _mixed_cells(out["code"].reshape(coarse, coarse))
@@ -85,11 +86,40 @@ def shoot(scene: CompiledScene, wavelength_nm: float, origin_mm: np.ndarray, nor
     return _as_fan(origin_mm, body, first, out)
 
 
-def start_body(arrays, origin_mm: np.ndarray, direction: np.ndarray) -> int:
-    """Number of the body in which light sets out from a point in a direction."""
-    from ..kernels.bundle import locate
+def start_body(scene: CompiledScene, wavelength_nm: float, origin_mm: np.ndarray, direction: np.ndarray) -> int:
+    """Number of the body in which light sets out from a point: the one that its first crossing leaves, -1 the air.
 
-    return int(locate(arrays, *origin_mm, *direction))
+    In Python, for the few starts of a plan: compiling `kernels/starts.py` for them would cost seconds.
+    """
+    from ..kernels.bundle import face_crossing
+
+    arrays = scene.arrays(wavelength_nm)
+
+    def first_met(sense: float, rows) -> tuple[float, int]:
+        """Distance to the nearest crossing of some sides in one sense, and the body that has the side."""
+        best, found = np.inf, -1
+        for face, sign, _, _, _, body in rows:
+            t = float(face_crossing(arrays.faces, face, arrays.pieces, *origin_mm, *direction, sense * sign, best))
+            if t < best and _holds(scene, int(body), int(face), origin_mm + t * direction):
+                best, found = t, int(body)
+        return best, found
+
+    left_at, body = first_met(-1.0, arrays.sides)
+    entered_at, _ = first_met(1.0, arrays.sides[arrays.air])
+    # A face shared by two bodies is left and entered at once: only an entry that comes first means air.
+    return -1 if entered_at < left_at - TOUCH_MM else body
+
+
+def _holds(scene: CompiledScene, body: int, but_face: int, point_mm: np.ndarray) -> bool:
+    """Whether a point lies on the right side of what a body checks on entry, one face left out."""
+    checked = scene.bodies[body]
+    sides = checked.sides if checked.entry_checks is None else checked.entry_checks
+    for name, side in sides:
+        number = scene.face_number[name]
+        sign = 1.0 if side == "ahead" else -1.0
+        if number != but_face and sign * scene.faces[number].side_value(point_mm[None])[0] < -TOUCH_MM:
+            return False
+    return True
 
 
 def _trace(arrays, origin_mm: np.ndarray, first: np.ndarray, body: int) -> dict:

@@ -39,8 +39,8 @@ def cup(**changes) -> dict:
 def landing_by_snell(tilt_deg: float, index: float, depth_mm: float = DEPTH_MM) -> float:
     """mm above the mark at which the undeviated line strikes the wall: Snell's law at a level surface.
 
-    The light runs depth * tan(inside) across the cup; the straight line covers as much in depth * tan(inside) /
-    tan(outside) of height.
+    The light runs depth * tan(inside) across the cup; the straight line covers as much in
+    depth * tan(inside) / tan(outside) of height.
     """
     outside = math.radians(tilt_deg)
     inside = math.asin(math.sin(outside) / index)
@@ -71,12 +71,12 @@ def test_shipped_scene_agrees_with_the_handbook_index():
 
 
 def test_landing_from_a_camera_at_its_distance_is_snells():
-    """The camera need not look straight at the mark's image; the path then leaves aslant to the line of sight."""
+    """The camera need not look straight at the mark's image: the path then leaves aslant to its axis."""
     focus, tilt = np.array([20.0, 0.0, -10.0]), 40.0
     scope = {"use": "phone-300", "tilt_deg": tilt, "focus_on": {"point_mm": focus.tolist()}}
     plan = planned(bench(scope=scope, media={"water": WATER}))
-    seat = np.array([-1.0, 0.0, 0.0])  # 9 o'clock
-    camera = focus + 300.0 * (math.cos(math.radians(tilt)) * np.array([0.0, 0.0, 1.0]) + math.sin(math.radians(tilt)) * seat)
+    lean = math.radians(tilt)
+    camera = focus + 300.0 * np.array([-math.sin(lean), 0.0, math.cos(lean)])  # the seat is at 9 o'clock
 
     def snell(x: float) -> float:
         inside = (RADIUS_MM - x) / math.hypot(RADIUS_MM - x, DEPTH_MM)
@@ -91,11 +91,12 @@ def test_landing_from_a_camera_at_its_distance_is_snells():
 
 def test_without_refraction_the_straw_lands_on_the_mark():
     plan = planned(bench(media={"water": {**WATER, "index": 1.0}}))
-    assert plan.along_sight.structure == "mark" and plan.along_sight.anterior_mm == pytest.approx(0.0, abs=1e-9)
+    assert plan.along_sight.structure == "mark"
+    assert plan.along_sight.anterior_mm == pytest.approx(0.0, abs=1e-9)
 
 
 def test_landing_does_not_depend_on_the_camera():
-    """The line of sight alone decides: neither distance nor the base between the two shots moves the landing."""
+    """The line of sight alone decides, not the distance, nor the base between the two shots."""
     phone = resolve_scene("bench-cup").mapping["scope"]["definition"]
     here = planned(bench()).along_sight.anterior_mm
     for change in ({"working_distance_mm": 180.0}, {"stereo_base_mm": 4.0}):
@@ -155,7 +156,8 @@ def test_mark_lies_where_it_is_drawn():
     assert anatomy.point("mark", 3.0, across=1.0) == pytest.approx([RADIUS_MM, 0.0, -48.0])
     assert anatomy.structure_at(anatomy.wall_point(1.9, 3.0), "cup-wall") == "mark"
     assert anatomy.structure_at(anatomy.wall_point(2.1, 3.0), "cup-wall") == "cup-wall"
-    assert anatomy.arc_of(np.array([30.0, 0.0, -70.0])) == pytest.approx(-30.0)  # 20 mm down, 10 mm along the floor
+    # 20 mm down, then 10 mm along the floor
+    assert anatomy.arc_of(np.array([30.0, 0.0, -70.0])) == pytest.approx(-30.0)
 
 
 def test_measured_cup_replaces_the_files():
@@ -171,7 +173,8 @@ TOOL = {"use": "straight-23g", "entry": {"clock": 9}}
 
 @pytest.mark.parametrize("changes, key, message", [
     ({"lens": LENS}, "lens.use", "must be left out (lens: none): no goniolens stands on a cup"),
-    ({"tool": TOOL}, "tool.use", "must be left out (tool: none): a cup has no entry; the straw goes down the line of sight"),
+    ({"tool": TOOL}, "tool.use",
+     "must be left out (tool: none): a cup has no entry; the straw goes down the line of sight"),
     ({"head": {"turn_deg": 20}}, "head.turn_deg", "must be 0: a cup of water cannot be turned; got 20"),
     ({"target": {"structure": "scleral-spur", "clock": 3}}, "target.structure",
      "must be mark, the only structure of a cup; got 'scleral-spur', and cup-80 is a cup"),
@@ -200,7 +203,8 @@ def test_an_unknown_water_is_told_where_it_is_named():
 def test_all_mismatches_are_told_at_once():
     with pytest.raises(BadInput) as caught:
         resolve_scene(bench(lens=LENS, tool=TOOL, gaze={"deg": 5}, head={"chin_up_deg": 5}))
-    assert {fault.key for fault in caught.value.faults} == {"lens.use", "tool.use", "gaze.deg", "head.chin_up_deg"}
+    told = {fault.key for fault in caught.value.faults}
+    assert told == {"lens.use", "tool.use", "gaze.deg", "head.chin_up_deg"}
 
 
 def test_a_cup_beside_an_eye_is_a_fault():
@@ -209,7 +213,8 @@ def test_a_cup_beside_an_eye_is_a_fault():
     with pytest.raises(BadInput) as caught:
         resolve_scene(bench(eye=both))
     fault, = caught.value.faults
-    assert (fault.key, fault.message) == ("eye.definition.chamber", "must be left out: cup is given, and a cup holds no eye")
+    assert fault.key == "eye.definition.chamber"
+    assert fault.message == "must be left out: cup is given, and a cup holds no eye"
 
 
 def test_a_lens_from_the_command_line_is_misuse():
