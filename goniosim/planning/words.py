@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from ..cautions import CAUTION
+from ..eye.measurements import is_cup
 from ..frames import clock_of, from_axis_deg, nasal_clock
 from ..sight.landing import Landing
 from .aim import Aim
@@ -46,14 +47,15 @@ def sentence(plan: Plan) -> str:
     if not plan.sighting.seen:
         return f"Not seen: {name}, {lens_words(plan)}. Cause: {plan.sighting.cause}. {what_next(plan)}".strip()
     opening = f"Seen: {name}, {lens_words(plan)}{by_words(plan)}."
-    if _in_a_mirror(plan):
+    if in_a_mirror(plan):
         away = float(np.linalg.norm(plan.sighting.view.apparent_mm - plan.target.point_mm))
         return f"{opening} Its image seems to lie {words.mm(away)} from it; steer by the tip as seen in the mirror, " \
                "not by the image's place: the picture is reversed."
     nearer, anterior, clockwise = plan.sighting.split
     shifts = [words.signed_mm(nearer, "nearer", "farther away")]
     if anterior is not None:
-        shifts.append(words.signed_mm(anterior, "more anterior", "more posterior"))
+        shifts.append(words.signed_mm(anterior, *(("higher", "lower") if on_the_bench(plan) else
+                                                  ("more anterior", "more posterior"))))
     if clockwise is not None and abs(clockwise) >= 0.05:
         shifts.append(words.signed_mm(clockwise, "clockwise", "anticlockwise"))
     middle = f"It seems {_listed(shifts)} than it is" if anterior is not None else f"It seems {shifts[0]} than it is"
@@ -63,6 +65,8 @@ def sentence(plan: Plan) -> str:
 def target_name(plan: Plan) -> str:
     """'the pigmented meshwork at 3 o'clock (nasal) of the right eye'."""
     target, side = plan.target, plan.scene.mapping["eye"]["side"]
+    if on_the_bench(plan):
+        return f"the mark at {clock_words(target.clock)} of the cup"
     what = "the point asked for" if target.structure == "point" else the(target.structure)
     at = "" if target.clock is None else f" at {clock_words(target.clock)} ({quadrant(target.clock, side)})"
     return f"{what}{at} of the {side} eye"
@@ -93,6 +97,8 @@ def quadrant(clock: float, side: str) -> str:
 def lens_words(plan: Plan) -> str:
     """'through direct-face-48' or 'without a lens'."""
     lens = plan.scene.mapping["lens"]
+    if on_the_bench(plan):
+        return "through the water"
     return "without a lens" if lens == "none" else f"through {lens['use']}"
 
 
@@ -104,7 +110,7 @@ def by_words(plan: Plan) -> str:
     return f", by {' and '.join(view.middle.by.split('+'))}"
 
 
-def _in_a_mirror(plan: Plan) -> bool:
+def in_a_mirror(plan: Plan) -> bool:
     """Whether the picture is reversed, so that the image's place is no guide to the aim."""
     magnified = plan.sighting.magnification
     return magnified is not None and magnified.handed == "reversed"
@@ -118,7 +124,8 @@ def landing_sentence(plan: Plan) -> str:
         return f"{start} never reaches the chamber"
     if landed.anterior_mm is None:
         return f"{start} lands on {the(landed.structure)}"
-    return f"{start} lands {Numbers(plan).signed_mm(landed.anterior_mm, 'too anterior', 'too posterior')}, " \
+    plus, minus = ways(plan)
+    return f"{start} lands {Numbers(plan).signed_mm(landed.anterior_mm, f'too {plus}', f'too {minus}')}, " \
            f"on {the(landed.structure)}"
 
 
@@ -143,6 +150,8 @@ def _aim_parts(words: "Numbers", aim: Aim) -> list[str]:
 def what_next(plan: Plan) -> str:
     """What to try where the target is not seen."""
     lens = plan.scene.mapping["lens"]
+    if on_the_bench(plan):
+        return "Lean the phone less, or fill the cup higher."
     if lens == "none":
         return "Light from the angle does not get out through a bare cornea: put a goniolens or a saline pool on."
     row = next((row for row in plan.cutoffs if row.structure == plan.target.structure), None)
@@ -199,10 +208,10 @@ def structures_table(plan: Plan) -> str:
 def landing_words(plan: Plan) -> str:
     """Landings and the correction, as a small table."""
     words = Numbers(plan)
-    rows = [("down the line of sight", _landing_line(words, plan.along_sight))]
+    rows = [("down the line of sight", _landing_line(words, plan.along_sight, ways(plan)))]
     if plan.from_entry is not None:
-        rows.append(("from the entry to the image", _landing_line(words, plan.from_entry)))
-    if plan.aim is not None and not _in_a_mirror(plan):
+        rows.append(("from the entry to the image", _landing_line(words, plan.from_entry, ways(plan))))
+    if plan.aim is not None and not in_a_mirror(plan):
         aim = plan.aim
         rows.append(("correction at the entry", f"{words.degrees(aim.correction_deg)} deg: "
                      f"{_listed(_aim_parts(words, aim))}; "
@@ -210,12 +219,15 @@ def landing_words(plan: Plan) -> str:
     return "a straight tool\n" + pairs(rows, indent=2)
 
 
-def _landing_line(words: "Numbers", landing: Landing) -> str:
+def _landing_line(words: "Numbers", landing: Landing, both_ways: tuple[str, str]) -> str:
     if landing.structure is None:
         return "never reaches the chamber"
     if landing.anterior_mm is None:
         return f"{plain(landing.structure)}"
-    return f"{words.signed_mm(landing.anterior_mm, 'anterior', 'posterior')} of the target, on {the(landing.structure)}"
+    plus, minus = (f"too {way}" if way in ("high", "low") else way for way in both_ways)
+    if plus == "too high":
+        return f"{words.signed_mm(landing.anterior_mm, plus, minus)}, on {the(landing.structure)}"
+    return f"{words.signed_mm(landing.anterior_mm, plus, minus)} of the target, on {the(landing.structure)}"
 
 
 def gap_words(plan: Plan) -> str:
@@ -229,7 +241,7 @@ def gap_words(plan: Plan) -> str:
 
 def cutoff_words(plan: Plan) -> str:
     """Cut-offs of the target's own structure, and in short of the bare cornea."""
-    rows = [[row.lens if row.lens != "none" else "bare cornea", _spans(row),
+    rows = [[("the water" if on_the_bench(plan) else "bare cornea") if row.lens == "none" else row.lens, _spans(row),
              row.cut.causes[0][0] if row.cut.causes else row.cut.never or NONE,
              row.cut.causes[-1][1] if row.cut.causes else NONE]
             for row in plan.cutoffs if row.structure == plan.target.structure]
@@ -295,6 +307,16 @@ def ending(plan: Plan) -> str:
     from .. import __version__
 
     return f"{textwrap.fill(CAUTION, WIDTH)}\ngoniosim {__version__}, inputs {plan.scene.fingerprint[:12]}"
+
+
+def on_the_bench(plan: Plan) -> bool:
+    """Whether the plan is of a cup of water in place of an eye."""
+    return is_cup(plan.scene.mapping["eye"]["definition"])
+
+
+def ways(plan: Plan) -> tuple[str, str]:
+    """Words for both ways along the wall: of the eye, or of the cup."""
+    return ("high", "low") if on_the_bench(plan) else ("anterior", "posterior")
 
 
 def _listed(parts: list[str]) -> str:
