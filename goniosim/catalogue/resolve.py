@@ -65,7 +65,9 @@ def _document_of(source: Any, plugin_folders: Sequence) -> tuple[Document, FileP
     if isinstance(source, Mapping):
         return Document("the scene given", plain(source)), None
     path = FilePath(source)
-    if not path.exists():
+    # A folder is no scene: a plan leaves one named after its scene, and the name still means the scene.
+    folder_of_that_name = path.is_dir() and Catalogue(plugin_folders).find("scene", str(source)) is not None
+    if not path.exists() or folder_of_that_name:
         path = _scene_by_name(str(source), plugin_folders)
     return read_document(path), path.parent
 

@@ -420,8 +420,8 @@ def side_of(q, f, pieces, x, y, z):
         across = rho - q[f, PAR]
         return math.sqrt(across * across + z * z) - q[f, PAR + 1]
     if kind == TORIC:
-        if rho >= q[f, EXT + 1]:
-            return -1.0
+        if q[f, PAR + 6] == 0.0 and rho >= q[f, EXT + 1]:
+            return -1.0  # beyond its equator a bare biconic cap has nothing behind it; a periphery goes on
         height, _, _ = toric_height(q, f, x, y)
         return z - height
     if kind == PROFILE and (rho < q[f, EXT] - 1e-9 or rho > q[f, EXT + 1] + 1e-9):

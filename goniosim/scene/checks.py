@@ -73,9 +73,12 @@ def _gap(body: Body, faces: dict[str, Face], points: np.ndarray) -> list[Fault]:
     alone = Body(body.name, "any", body.sides)
     scene = CompiledScene(tuple(faces[name] for name, _ in body.sides), (alone,), {"any": _AnyMedium})
     rng = np.random.default_rng(21)
-    directions = rng.normal(size=(len(points) * DIRECTIONS, 3))
-    directions /= np.linalg.norm(directions, axis=1, keepdims=True)
-    origins = np.repeat(points, DIRECTIONS, axis=0)
+    # Along a cylinder's own axis it has no end: those directions are tried on purpose.
+    axes = np.array([sign * faces[name].rotation[:, 2] for name, _ in body.sides for sign in (1.0, -1.0)])
+    around = rng.normal(size=(DIRECTIONS, 3))
+    ways = np.concatenate([around / np.linalg.norm(around, axis=1, keepdims=True), axes])
+    directions = np.ascontiguousarray(np.tile(ways, (len(points), 1)))
+    origins = np.repeat(points, len(ways), axis=0)
     out = raw_trace(scene.arrays(555.0), origins, directions, np.zeros(len(origins), np.int64))
     from ..kernels.arrays import LOST
 

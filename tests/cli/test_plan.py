@@ -43,6 +43,14 @@ def test_the_resolved_scene_gives_the_plan_again_byte_for_byte(in_empty_folder):
         assert first == second, name
 
 
+def test_planning_again_by_name_renews_the_folder_of_that_name(in_empty_folder, capsys):
+    assert run(["plan", SCENE]) == 0
+    before = (in_empty_folder / SCENE / "plan.json").read_bytes()
+    assert run(["plan", SCENE, "--tilt", "30"]) == 0
+    assert (in_empty_folder / SCENE / "plan.json").read_bytes() != before
+    assert os.listdir() == [SCENE]
+
+
 def test_json_alone_on_stdout_and_no_folder(in_empty_folder, capsys):
     assert run(["plan", SCENE, "--json"]) == 0
     plan = json.loads(capsys.readouterr().out)
