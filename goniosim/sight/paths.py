@@ -119,7 +119,8 @@ def _newton(scene, wavelength_nm, fan, group, starts, to_point, goal, tolerance)
 class Scoped:
     """A scope at its place: line of sight w, centre C, and what its pupils are.
 
-    sight, right, up : (3,) unit vectors. centre_mm : (3,).
+    sight, right, up : (3,) unit vectors. centre_mm : (3,). lost : it was to be centred on a target's image, but
+    no path from the target leaves along the line of sight, so that C is the target itself.
     """
 
     sight: np.ndarray
@@ -130,6 +131,7 @@ class Scoped:
     stereo_base_mm: float
     pupil_diameter_mm: float
     field_diameter_mm: float
+    lost: bool = False
 
     def pupil(self, side: float) -> np.ndarray:
         """Centre of a pupil: side -1 left, 0 the middle between, +1 right."""

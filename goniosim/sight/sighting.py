@@ -84,7 +84,7 @@ class Viewer:
             return self.scope_at(np.asarray(focus["point_mm"], dtype=float))
         scope = self.scope_at(target.point_mm)
         found = self.best_centring(fan, scope)
-        return scope if found is None else replace(scope, centre_mm=found.centre_mm)
+        return replace(scope, lost=True) if found is None else replace(scope, centre_mm=found.centre_mm)
 
     def best_centring(self, fan: Fan, scope: Scoped) -> Centred | None:
         """The centring with the most throughput among those the scene allows."""
@@ -101,7 +101,9 @@ class Viewer:
     def sighting(self, target: Target, scope: Scoped, fan: Fan) -> Sighting:
         """All figures of one target through a scope at its place."""
         views = sorted(self.views(fan, scope), key=lambda view: -view.middle.throughput)
-        chosen = [view for view in views if self._allowed(view.middle)]
+        # What no path shows along the line of sight itself is not seen, so that plan and cut-offs agree.
+        missed = scope.lost and bool(np.all(scope.centre_mm == target.point_mm))
+        chosen = [] if missed else [view for view in views if self._allowed(view.middle)]
         if not chosen:
             return Sighting(target, False, self._cause(fan, scope), None, tuple(views), None, None, None, None, None)
         view = chosen[0]
