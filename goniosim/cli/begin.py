@@ -4,20 +4,23 @@ from __future__ import annotations
 
 import argparse
 import os
+import re
 import tempfile
+import textwrap
 from pathlib import Path
 
 from ..catalogue import resolve_scene
 from ..cautions import CAUTION
 from ..errors import BadInput, ExitCode, Misuse
 from ..frames import nasal_clock
+from ..scene.room_keys import ENTRY_KEYS, HEAD_KEYS, SCENE_KEYS, SCOPE_BLOCK
 from .options import add_common_options, print_caution, print_json
 
 COMMENT_COLUMN = 42
 SCENE = """\
 # A starter scene; change what differs in your case, then: goniosim plan {file}
 # Every key with its unit, range and default: goniosim plugins explain scene
-# {caution}
+{caution}
 goniosim: scene
 schema: 1
 name: {name}                      # also the name of the folder that the plan writes
@@ -26,32 +29,32 @@ title: {title}
 eye:
   use: {eye}                      # goniosim plugins list eyes; or an eye file of your own beside this scene
   side: {side}                    # right or left
-  measured: {{}}                    # what you measured, for example {{chamber: {{depth_mm: 2.9}}, angle: {{width_deg: 30}}}}
+  measured: {{}}                    # what you measured, such as {{chamber: {{depth_mm: 2.9}}}}
 
 {lens}
 
 scope:
   use: stereo-200                 # goniosim plugins list scopes
-  tilt_deg: {tilt:g}                 # lean of the oculars toward the surgeon, 0 to 90
-  focus_on: target
+  tilt_deg: {tilt:g}                 # lean of the oculars toward the surgeon, {tilt_range}
+  focus_on: target                # centred on the target's image
 
 head:
-  turn_deg: {turn:g}                 # 0: facing the ceiling
+  turn_deg: {turn:g}                 # {turn_range}; 0: facing the ceiling
   turn_toward: {turn_toward}      # the patient's own left or right
-  chin_up_deg: 0
+  chin_up_deg: 0                  # {chin_range}; less than 0: chin down
 
 surgeon: {{seat_clock: {seat:g}}}       # clock hour of the room at which you sit, 9 is the patient's right
 
 tool:
   use: straight-23g               # goniosim plugins list tools
-  entry: {{clock: {seat:g}, inside_limbus_mm: 1.0}}
+  entry: {{clock: {seat:g}, inside_limbus_mm: 1.0}}   # distance inside the limbus, {inside_range}
 
 target:
   structure: pigmented-meshwork   # schwalbe-line, clear-meshwork, scleral-spur, ciliary-band, iris-root ...
-  clock: {target:g}                  # clock hour as you see it facing the patient, 12 is superior
+  clock: {target:g}                  # 0 to 12, as you see it facing the patient; 12 is superior
 
 room: {{use: plain-room}}           # goniosim plugins list rooms
-wavelength_nm: 555
+wavelength_nm: 555                # of the light, {wavelength_range}
 """
 LENS = """\
 lens:
@@ -64,11 +67,15 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Arguments of the command."""
     parser.add_argument("file", metavar="FILE", type=Path, help="scene file to write")
     parser.add_argument("--eye", default="adult-open", metavar="NAME", help="eye (adult-open)")
-    parser.add_argument("--lens", default="direct-face-48", metavar="NAME", help="lens, or none (direct-face-48)")
+    parser.add_argument(
+        "--lens", default="direct-face-48", metavar="NAME", help="lens, or none (direct-face-48)"
+    )
     parser.add_argument("--side", choices=("right", "left"), default="right", help="which eye (right)")
     parser.add_argument("--target-clock", type=float, metavar="H", help="clock hour of the target (nasal)")
     parser.add_argument("--tilt", type=float, default=35.0, metavar="DEG", help="lean of the microscope (35)")
-    parser.add_argument("--turn", type=float, default=35.0, metavar="DEG", help="turn of the head, away from you (35)")
+    parser.add_argument(
+        "--turn", type=float, default=35.0, metavar="DEG", help="turn of the head, away from you (35)"
+    )
     parser.add_argument("--seat", type=float, metavar="H", help="clock hour at which you sit (temporal)")
     parser.add_argument("--replace", action="store_true", help="write over a file that is there")
     add_common_options(parser)
@@ -96,11 +103,37 @@ def scene_text(args: argparse.Namespace, path: Path) -> str:
     lens = "lens: none                        # bare cornea in air"
     if args.lens != "none":
         lens = LENS.format(lens=args.lens, mark=(target + 6.0) % 12.0 or 12.0)
-    name = "".join(letter if letter.isalnum() else "-" for letter in path.stem.lower()).strip("-") or "case"
-    text = SCENE.format(file=path.name, caution=CAUTION, name=name, eye=args.eye, side=args.side, lens=lens,
-                        title=f"{args.side.capitalize()} eye", tilt=args.tilt, turn=args.turn, seat=seat, target=target,
-                        turn_toward="left" if 6.0 < seat < 12.0 else "right")
+    name = "-".join(re.findall("[a-z0-9]+", path.stem.lower())) or "case"
+    caution = textwrap.fill(CAUTION, 98, initial_indent="# ", subsequent_indent="# ")
+    text = SCENE.format(
+        **_ranges(),
+        file=path.name,
+        caution=caution,
+        name=name,
+        eye=args.eye,
+        side=args.side,
+        lens=lens,
+        title=f"{args.side.capitalize()} eye",
+        tilt=args.tilt,
+        turn=args.turn,
+        seat=seat,
+        target=target,
+        turn_toward="left" if 6.0 < seat < 12.0 else "right",
+    )
     return "".join(f"{_aligned(line)}\n" for line in text.splitlines())
+
+
+def _ranges() -> dict[str, str]:
+    """What the comments say of the ranges, from the declarations that check them."""
+    keys = {key.name: key for block in (SCOPE_BLOCK, HEAD_KEYS, ENTRY_KEYS, SCENE_KEYS) for key in block}
+    names = {
+        "tilt": "tilt_deg",
+        "turn": "turn_deg",
+        "chin": "chin_up_deg",
+        "inside": "inside_limbus_mm",
+        "wavelength": "wavelength_nm",
+    }
+    return {f"{short}_range": keys[name].range_in_words() for short, name in names.items()}
 
 
 def _aligned(line: str) -> str:
@@ -110,7 +143,7 @@ def _aligned(line: str) -> str:
 
 
 def _write_checked(path: Path, text: str, plugin_folders: list[str]) -> None:
-    """Write beside its place, check it as the plan would, then put it there; nothing is left where that fails."""
+    """Write beside its place, check it as the plan would, put it there; nothing is left where that fails."""
     temporary = None
     try:
         handle, temporary = tempfile.mkstemp(dir=path.parent, prefix=f".{path.stem}.", suffix=".yaml")

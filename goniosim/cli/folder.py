@@ -19,7 +19,8 @@ PLAN_FILES = (PLAN_FILE, "resolved-scene.yaml", "cross-section.svg")
 def write_plan_folder(folder: Path, files: Mapping[str, str]) -> None:
     """Write files (name -> text) as a folder; a folder that a plan wrote before is renewed as a whole.
 
-    Raises Misuse, with nothing left behind, where something else is in the way or the place cannot be written.
+    Raises Misuse, with nothing left behind, where something else is in the way or the place cannot be
+    written.
     """
     folder = Path(os.path.abspath(folder))
     refuse_what_is_in_the_way(folder)
@@ -32,8 +33,10 @@ def write_plan_folder(folder: Path, files: Mapping[str, str]) -> None:
             (temporary / name).write_text(text, encoding="utf-8", newline="\n")
         _swap(temporary, folder)
     except OSError as error:
-        raise Misuse(f"the folder {folder.name} cannot be written in {folder.parent}: {error.strerror or error}; "
-                     "choose another with --into DIR") from None
+        raise Misuse(
+            f"the folder {folder.name} cannot be written in {folder.parent}: {error.strerror or error}; "
+            "choose another with --into DIR"
+        ) from None
     finally:
         if temporary is not None:
             shutil.rmtree(temporary, ignore_errors=True)
@@ -46,12 +49,19 @@ def refuse_what_is_in_the_way(folder: Path) -> None:
     advice = "it is left alone; choose another folder with --into DIR"
     if folder.is_symlink() or not folder.is_dir():
         raise Misuse(f"{folder.name} is in the way and is not a folder; {advice}")
-    names = sorted(path.name for path in folder.iterdir())
+    try:
+        names = sorted(os.listdir(folder))
+    except OSError as error:
+        raise Misuse(
+            f"the folder {folder.name} cannot be read: {error.strerror or error}; {advice}"
+        ) from None
     strangers = [name for name in names if name not in PLAN_FILES]
     if strangers:
         raise Misuse(f"the folder {folder.name} holds {strangers[0]}, which no plan wrote; {advice}")
     if names and not _is_plan(folder / PLAN_FILE):
-        raise Misuse(f"the folder {folder.name} was not written by a plan: it holds no {PLAN_FILE} of one; {advice}")
+        raise Misuse(
+            f"the folder {folder.name} was not written by a plan: it holds no {PLAN_FILE} of one; {advice}"
+        )
 
 
 def _is_plan(path: Path) -> bool:
@@ -72,8 +82,9 @@ def _swap(new: Path, place: Path) -> None:
         os.rename(place, aside / place.name)
         try:
             os.rename(new, place)
-        except OSError:
-            os.rename(aside / place.name, place)
+        except BaseException:  # Ctrl-C too
+            if not place.exists():
+                os.rename(aside / place.name, place)
             raise
     finally:
         shutil.rmtree(aside, ignore_errors=True)

@@ -30,7 +30,9 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Arguments of the command."""
     parser.add_argument("scene", metavar="SCENE", help="a scene file, or the name of a shipped scene")
     for option, (_, kind, stands, meaning) in OVERRIDES.items():
-        parser.add_argument(f"--{option}", type=kind, metavar=stands, help=f"{meaning}, in place of the scene's")
+        parser.add_argument(
+            f"--{option}", type=kind, metavar=stands, help=f"{meaning}, in place of the scene's"
+        )
     parser.add_argument("--into", metavar="DIR", type=Path, help="folder to write to (named after the scene)")
     parser.add_argument("--must-see", action="store_true", help="exit with 1 where the target is not seen")
     add_common_options(parser)
@@ -57,7 +59,11 @@ def run(args: argparse.Namespace) -> int:
 
 def overrides_of(args: argparse.Namespace) -> dict[str, Any]:
     """Dotted key -> value for the options that were given."""
-    return {key: getattr(args, option) for option, (key, *_) in OVERRIDES.items() if getattr(args, option) is not None}
+    return {
+        key: getattr(args, option)
+        for option, (key, *_) in OVERRIDES.items()
+        if getattr(args, option) is not None
+    }
 
 
 def plan_text(plan: Plan) -> str:
@@ -67,10 +73,17 @@ def plan_text(plan: Plan) -> str:
 
 def show(plan: Plan, resolved, folder: Path) -> None:
     """Print the report, and write the folder."""
-    from ..planning.words import report
+    from ..planning.report import report
     from ..show.cross_section import cross_section
 
-    write_plan_folder(folder, {"plan.json": plan_text(plan), "resolved-scene.yaml": resolved_text(resolved),
-                               "cross-section.svg": cross_section(plan)})
-    print(report(plan))
+    words = report(plan)
+    write_plan_folder(
+        folder,
+        {
+            "plan.json": plan_text(plan),
+            "resolved-scene.yaml": resolved_text(resolved),
+            "cross-section.svg": cross_section(plan),
+        },
+    )
+    print(words)
     print(f"written: {folder}/ with plan.json, resolved-scene.yaml, cross-section.svg")

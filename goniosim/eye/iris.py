@@ -29,6 +29,7 @@ from .cornea import Cornea
 from .curves import find_root
 from .recess import Recess, WALL_POINT_MM, WallPoint, recess_of, wall_point
 
+WORTH_A_NOTE_MM = 0.005  # a bow that gives way by less is not told: OCT does not resolve it
 THICKNESS_POINT_MM = 0.75
 BELIEVABLE_B = (-0.5, 1.0)
 LEAST_A = -0.6
@@ -246,7 +247,7 @@ class _Solver:
 
     def _note_bow(self, iris: Iris) -> None:
         got = iris.bow_mm()
-        if abs(got - self.bow) > 1e-6:
+        if abs(got - self.bow) > WORTH_A_NOTE_MM:
             self.notes.append(
                 f"a bow of {self.bow:g} mm does not go with this angle: {got:.3f} mm is used "
                 "(the bow gives way)"

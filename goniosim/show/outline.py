@@ -42,7 +42,7 @@ class Meridian:
 
 
 def body_outline(body: Body, faces: dict[str, Face], plane: Meridian) -> np.ndarray | None:
-    """Outline of a body in the plane, (n, 2); None where the plane misses it. Seen whole from a point inside."""
+    """Outline of a body, seen whole from a point inside, in the plane, (n, 2); None where that misses it."""
     from ..kernels.bundle import face_crossing
 
     line = np.arange(-FAR_MM, FAR_MM, SEARCH_MM)
@@ -57,7 +57,9 @@ def body_outline(body: Body, faces: dict[str, Face], plane: Meridian) -> np.ndar
     edge = []
     for angle in np.linspace(0.0, 2.0 * np.pi, DIRECTIONS, endpoint=False):
         way = np.cos(angle) * plane.across + np.sin(angle) * np.array([0.0, 0.0, 1.0])
-        t = min(face_crossing(table, i, pieces, *start, *way, sense, FAR_MM) for i, sense in enumerate(senses))
+        t = min(
+            face_crossing(table, i, pieces, *start, *way, sense, FAR_MM) for i, sense in enumerate(senses)
+        )
         edge.append(start + min(t, FAR_MM) * way)
     return thinned(plane.flat(edge))
 
@@ -73,7 +75,7 @@ def thinned(points: np.ndarray) -> np.ndarray:
         if last - first < 2:
             continue
         chord = points[last] - points[first]
-        rest = points[first + 1:last] - points[first]
+        rest = points[first + 1 : last] - points[first]
         size = np.hypot(*chord)
         off = np.abs(chord[0] * rest[:, 1] - chord[1] * rest[:, 0]) / size if size else np.hypot(*rest.T)
         if off.max() > FLAT_MM:

@@ -1,4 +1,4 @@
-"""Colours: the Okabe-Ito palette, published for colour-blind readers (Okabe & Ito 2008), and greys for print."""
+"""Colours: the Okabe-Ito palette, published for colour-blind readers (2008), and greys for print."""
 
 from __future__ import annotations
 

@@ -31,8 +31,10 @@ def test_a_folder_with_a_file_of_the_users_is_left_alone_and_named(tmp_path):
     (tmp_path / "case" / "my-notes.txt").write_text("mine")
     with pytest.raises(Misuse) as caught:
         write_plan_folder(tmp_path / "case", PLAN)
-    assert str(caught.value) == ("the folder case holds my-notes.txt, which no plan wrote; it is left alone; "
-                                 "choose another folder with --into DIR")
+    assert str(caught.value) == (
+        "the folder case holds my-notes.txt, which no plan wrote; it is left alone; "
+        "choose another folder with --into DIR"
+    )
     assert (tmp_path / "case" / "my-notes.txt").read_text() == "mine"
 
 
@@ -56,7 +58,9 @@ def test_a_file_or_a_link_in_the_way_is_left_alone(tmp_path):
 
 def test_a_place_that_cannot_be_written_is_named_and_nothing_is_left(tmp_path):
     (tmp_path / "file").write_text("")
-    with pytest.raises(Misuse, match="the folder case cannot be written in .*file: .*; choose another with --into DIR"):
+    with pytest.raises(
+        Misuse, match="the folder case cannot be written in .*file: .*; choose another with --into DIR"
+    ):
         write_plan_folder(tmp_path / "file" / "case", PLAN)
     assert os.listdir(tmp_path) == ["file"]
 
@@ -77,3 +81,31 @@ def test_an_interruption_leaves_the_old_plan_whole(tmp_path, monkeypatch, at):
     monkeypatch.undo()
     assert os.listdir(tmp_path) == ["case"]
     assert (tmp_path / "case" / "plan.json").read_text() == PLAN["plan.json"]
+
+
+def test_ctrl_c_between_the_two_renames_puts_the_old_plan_back(tmp_path, monkeypatch):
+    write_plan_folder(tmp_path / "case", PLAN)
+    renames = []
+
+    def rename(source, goal, real=os.rename):
+        renames.append(goal)
+        if len(renames) == 2:
+            raise KeyboardInterrupt
+        real(source, goal)
+
+    monkeypatch.setattr("os.rename", rename)
+    with pytest.raises(KeyboardInterrupt):
+        write_plan_folder(tmp_path / "case", {"plan.json": "new"})
+    monkeypatch.undo()
+    assert os.listdir(tmp_path) == ["case"] and len(renames) == 3
+    assert (tmp_path / "case" / "plan.json").read_text() == PLAN["plan.json"]
+
+
+def test_a_folder_that_cannot_be_read_is_named(tmp_path, monkeypatch):
+    def refused(_):
+        raise PermissionError(13, "Permission denied")
+
+    (tmp_path / "case").mkdir()
+    monkeypatch.setattr("os.listdir", refused)
+    with pytest.raises(Misuse, match="the folder case cannot be read: Permission denied"):
+        write_plan_folder(tmp_path / "case", PLAN)

@@ -1,7 +1,7 @@
 """A slow, obvious tracer: the bodies of the design asked point by point, nothing shared with the kernels.
 
-A body is the set of points on the right side of all its faces; where a ray goes from one set into another is found
-by marching and bisection on that question alone, the face by whose side value vanishes there (scipy's brentq).
+A body is the set of points on the right side of all its faces; every change of
+side of every face along a ray is found by marching and scipy's brentq, and between two of them the sets are asked.
 Fresnel by the angle form of the textbooks, on purpose another one than the program's.
 """
 
@@ -15,7 +15,7 @@ from scipy.optimize import brentq
 from goniosim.scene.bodies import Body
 from goniosim.scene.compile import CompiledScene
 
-REACH_MM, STEP_MM, OFF_MM = 45.0, 0.02, 1e-7
+REACH_MM, STEP_MM, OFF_MM = 30.0, 0.02, 1e-7
 EDGE_MM = 1e-5  # a hit this near to another face may fall to either: such rays are not judged
 NEAR_CRITICAL = 1e-7
 
@@ -54,42 +54,48 @@ class SlowTracer:
                 return body
         return None
 
-    def border(self, body: Body, start: np.ndarray, way: np.ndarray, inside: bool) -> tuple[float, str, float]:
-        """Where a ray that is inside (or outside) a body first is no longer: distance, face, distance of the next face."""
+    def crossings(self, start: np.ndarray, way: np.ndarray) -> list[tuple[float, str]]:
+        """Every change of side of every face along a ray, nearest first."""
         distances = np.concatenate([[OFF_MM], np.arange(STEP_MM, REACH_MM, STEP_MM)])
-        held = self.depths(body, start + distances[:, None] * way).min(axis=0) > 0.0
-        changed = np.flatnonzero(held != inside)
-        if len(changed) == 0 or changed[0] == 0:
-            return (OFF_MM, "", 0.0) if len(changed) else (np.inf, "", 0.0)
-        low, high = distances[changed[0] - 1], distances[changed[0]]
-        for _ in range(45):
-            middle = 0.5 * (low + high)
-            if (self.depths(body, (start + middle * way)[None]).min() > 0.0) == inside:
-                low = middle
-            else:
-                high = middle
-        beside = np.abs(self.depths(body, (start + high * way)[None])[:, 0])
-        order = np.argsort(beside)
-        name = body.sides[order[0]][0]
-        t = brentq(lambda s: float(self.faces[name].side_value((start + s * way)[None])[0]), low - 1e-9, high + 1e-9,
-                   xtol=1e-15, rtol=1e-15)
-        return t, name, beside[order[1]]
+        points, found = start + distances[:, None] * way, []
+        for name, face in self.faces.items():
+            ahead = face.side_value(points) > 0.0
+            for i in np.flatnonzero(ahead[1:] != ahead[:-1]):
+                t = brentq(lambda s: float(face.side_value((start + s * way)[None])[0]), distances[i], distances[i + 1],
+                           xtol=1e-15, rtol=1e-15)
+                found.append((t, name))
+        return sorted(found)
+
+    def border(self, body: Body, crossed: list, start: np.ndarray, way: np.ndarray, inside: bool) -> tuple[float, str]:
+        """Where a ray that is inside (or outside) a body first is no longer, and the face it crosses there."""
+        ends = [t for t, _ in crossed] + [REACH_MM]
+        for (t, name), end in zip(crossed, ends[1:]):
+            if (self.depths(body, (start + 0.5 * (t + end) * way)[None]).min() > 0.0) != inside:
+                return t, name
+        return np.inf, ""
+
+    def edge(self, name: str, point: np.ndarray) -> float:
+        """How far, by side values, the nearest other face is from a point on a face."""
+        return min(abs(float(face.side_value(point[None])[0])) for other, face in self.faces.items() if other != name)
 
     def trace(self, start: np.ndarray, way: np.ndarray) -> Way:
         """Follow a ray to its end."""
         body, told = self.body_at(start), Way(direction=way)
+        if body is not None and body.medium == "opaque":
+            told.fair = False  # no light sets out there
+            return told
         for _ in range(40):
-            if body is not None:
-                t, name, edge = self.border(body, start, way, inside=True)
-            else:
-                t, name, edge = min((self.border(each, start, way, inside=False) for each in self.bodies),
-                                    key=lambda row: row[0])
+            crossed = self.crossings(start, way)
+            candidates = self.bodies if body is None else [body]
+            t, name = min(self.border(each, crossed, start, way, inside=body is not None) for each in candidates)
             if not np.isfinite(t):
                 return told
-            told.fair &= bool(name) and edge > EDGE_MM
+            start = start + t * way
+            # A side value that jumps where a cap ends, instead of vanishing, means that a crossing close by was stepped over.
+            on_face = abs(float(self.faces[name].side_value(start[None])[0])) < 1e-9
+            told.fair &= on_face and self.edge(name, start) > EDGE_MM
             if not told.fair:
                 return told
-            start = start + t * way
             told.points.append(start)
             if body is not None:
                 told.power *= np.exp(-self.absorption[body.name] * t)

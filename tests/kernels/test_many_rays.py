@@ -9,7 +9,7 @@ from slow_tracer import SlowTracer
 
 from goniosim.scene.tracing import trace
 
-RAYS = 1500
+RAYS = 1000
 MOST_UNFAIR = 0.02  # share of rays that run into an edge or the critical angle and are not judged
 
 
