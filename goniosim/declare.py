@@ -18,8 +18,8 @@ class Key:
 
     name : the key as written in the file, with its unit as a suffix where it has one.
     kind : 'number' | 'integer' | 'text' | 'name' | 'flag' | 'choice' | 'numbers' | 'names'
-           | 'map' | 'maps' | 'clock' | 'any'.
-           'numbers' is a list of numbers (`length` fixes how many), 'maps' a list of mappings,
+           | 'texts' | 'map' | 'maps' | 'clock' | 'any'.
+           'numbers' is a list of numbers (`length` fixes how many), 'texts' a list of texts, 'maps' a list of mappings,
            'clock' a clock hour h with 0 < h <= 12, 'name' a kebab-case name.
     meaning : one sentence for the reader of `explain`.
     default : REQUIRED, or the value used when the key is left out (None: left to a rule,

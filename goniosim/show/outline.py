@@ -54,13 +54,14 @@ def body_outline(body: Body, faces: dict[str, Face], plane: Meridian) -> np.ndar
     start = inside[np.argmin(np.linalg.norm(inside - inside.mean(axis=0), axis=1))]
     table, pieces = face_table(tuple(faces[name] for name, _ in body.sides))
     senses = [1.0 if side == "behind" else -1.0 for _, side in body.sides]
-    edge = []
-    for angle in np.linspace(0.0, 2.0 * np.pi, DIRECTIONS, endpoint=False):
-        way = np.cos(angle) * plane.across + np.sin(angle) * np.array([0.0, 0.0, 1.0])
-        t = min(
-            face_crossing(table, i, pieces, *start, *way, sense, FAR_MM) for i, sense in enumerate(senses)
-        )
-        edge.append(start + min(t, FAR_MM) * way)
+    angles = np.linspace(0.0, 2.0 * np.pi, DIRECTIONS, endpoint=False)
+    ways = plane.solid(np.cos(angles), np.sin(angles))
+    reach = np.full(DIRECTIONS, FAR_MM)
+    begun = tuple(start.tolist())
+    for row, way in enumerate(ways.tolist()):  # plain numbers: a kernel takes them sooner than numpy's
+        for i, sense in enumerate(senses):
+            reach[row] = min(reach[row], face_crossing(table, i, pieces, *begun, *way, sense, FAR_MM))
+    edge = start + reach[:, None] * ways
     return thinned(plane.flat(edge))
 
 
